@@ -1,0 +1,1 @@
+"""The arm and the trunk that carries it: links, joints, postures, reach."""

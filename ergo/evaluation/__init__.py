@@ -1,0 +1,1 @@
+"""Where person and machine meet: at the handle."""

@@ -1,0 +1,1 @@
+"""Many placements: compare, sweep, suggest."""

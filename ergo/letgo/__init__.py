@@ -1,0 +1,1 @@
+"""What happens when the load suddenly lets go."""

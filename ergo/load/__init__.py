@@ -1,0 +1,1 @@
+"""What resists the slide: one load a file."""

@@ -1,0 +1,1 @@
+"""The machine between hand and load: lever, linkage, friction, handle path, zones."""

@@ -1,0 +1,1 @@
+"""The people: body sizes and strengths of a population's virtual operators."""

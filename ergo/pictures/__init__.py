@@ -1,0 +1,1 @@
+"""Results drawn: one view a file, one drawing language."""

@@ -1,0 +1,1 @@
+"""Limits, ratings and the sentences that explain them."""

@@ -1,0 +1,1 @@
+"""The reasoning written down for the design file."""

@@ -1,0 +1,1 @@
+"""What a hand can give: published strengths, stance, grip, and their smallest."""

@@ -1,0 +1,1 @@
+"""The study file: read, checked, frozen, written."""
