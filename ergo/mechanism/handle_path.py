@@ -74,8 +74,8 @@ class MeasuredPath:
     points_m : (K, 3) points of the grip centre in the order of the stroke [m], K at least 2
     force_n : (K,) hand force needed along the path [N]
 
-    A smooth curve (modified Akima, which does not swing out at corners) is laid through the points;
-    the force is read by straight lines over the arc length.
+    A cubic is laid through the points, its slope at each from the parabola through it and its two neighbours,
+    so a bad point spoils its neighbourhood only; the force is read by straight lines over the arc length.
     """
 
     points_m: Array
@@ -96,13 +96,14 @@ class MeasuredPath:
         return tuple(Problem("path.file", f"points {k + 1} and {k + 2} are the same place") for k in still)
 
     def _fine(self) -> tuple[Array, Array, Array]:
-        from scipy.interpolate import Akima1DInterpolator  # kept out of a start that has no measured path
+        from scipy.interpolate import CubicHermiteSpline  # kept out of a start that has no measured path
 
         p = np.asarray(self.points_m, dtype=float)
         chord = np.concatenate([[0.0], np.cumsum(np.linalg.norm(np.diff(p, axis=0), axis=1))])
         knots = [np.linspace(*pair, _FINE_STEPS, endpoint=False) for pair in itertools.pairwise(chord)]
         fine = np.append(np.concatenate(knots), chord[-1])
-        curve = Akima1DInterpolator(chord, p, axis=0, method="makima")
+        slope = np.gradient(p, chord, axis=0, edge_order=2 if len(p) > 2 else 1)
+        curve = CubicHermiteSpline(chord, p, slope, axis=0)
         place, tangent = curve(fine), curve(fine, nu=1)
         arc = np.concatenate([[0.0], np.cumsum(np.linalg.norm(np.diff(place, axis=0), axis=1))])
         return arc, place, tangent
