@@ -97,14 +97,7 @@ def drive(
     StudyError
         If the linkage cannot make the stroke.
     """
-    if isinstance(linkage, FixedPin):
-        raise NothingMovesError(" ".join(linkage.answer(lever.start_rad, lever.end_rad).sentences()))
-    found = lever.problems() or (
-        *linkage.problems(lever.start_rad, lever.end_rad),
-        *rubbing.problems(friction, lever),
-    )
-    if found:
-        raise StudyError(found)
+    linkage = _moving(lever, linkage, friction)
     a, way, sense = path.lever_rad, lever.way, travel_sense(lever, linkage)
     slide = sense * (linkage.slide_m(a) - linkage.slide_m(np.array([lever.start_rad])))
     force = np.broadcast_to(np.asarray(load(slide), dtype=float), slide.shape).copy()
@@ -190,6 +183,19 @@ def travel_sense(lever: Lever, linkage: Linkage) -> float:
         return 1.0 if last > first else -1.0
     slope = float(linkage.slide_per_rad_m(np.array([lever.start_rad]))[0]) * lever.way
     return 1.0 if slope >= 0.0 else -1.0
+
+
+def _moving(lever: Lever, linkage: Linkage | FixedPin, friction: PinAndGuide) -> Linkage:
+    """Return the linkage once it is known to make the stroke; raise what keeps it from it."""
+    if isinstance(linkage, FixedPin):
+        raise NothingMovesError(" ".join(linkage.answer(lever.start_rad, lever.end_rad).sentences()))
+    found = lever.problems() or (
+        *linkage.problems(lever.start_rad, lever.end_rad),
+        *rubbing.problems(friction, lever),
+    )
+    if found:
+        raise StudyError(found)
+    return linkage
 
 
 def _path_fields(path: HandlePath) -> dict[str, Array]:

@@ -46,6 +46,7 @@ def test_bad_loads_are_problems(load, words):
 def test_beyond_its_let_go_a_load_is_gone_and_its_table_is_not_asked():
     load = LetsGo(TableLoad((0.0, 0.006), (100.0, 400.0)), 0.005)
     np.testing.assert_allclose(load.force_n(SLIDE), [100.0, 350.0, 0.0])
+    np.testing.assert_array_equal(load.force_n(np.array([0.0051, 0.0059])), 0.0)
     assert load.reach_problems(SLIDE) == ()
     assert load.kind == "table"
     assert LetsGo(ConstantLoad(5.0), -0.001).problems()[0].where == "load.lets_go_at"
