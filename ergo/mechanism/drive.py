@@ -99,7 +99,7 @@ def drive(
     """
     linkage = _moving(lever, linkage, friction)
     a, way, sense = path.lever_rad, lever.way, travel_sense(lever, linkage)
-    slide = sense * (linkage.slide_m(a) - linkage.slide_m(np.array([lever.start_rad])))
+    slide = slide_travel_m(lever, linkage, a)
     force = np.broadcast_to(np.asarray(load(slide), dtype=float), slide.shape).copy()
     ratio = sense * way * linkage.slide_per_rad_m(a) / lever.length_m
     weight = -way * (lever.weight_torque_nm(a) + lever.spring_torque_nm(a)) / lever.length_m
@@ -183,6 +183,15 @@ def travel_sense(lever: Lever, linkage: Linkage) -> float:
         return 1.0 if last > first else -1.0
     slope = float(linkage.slide_per_rad_m(np.array([lever.start_rad]))[0]) * lever.way
     return 1.0 if slope >= 0.0 else -1.0
+
+
+def slide_travel_m(lever: Lever, linkage: Linkage, lever_rad: Array) -> Array:
+    """Return the slide travel (P,) [m] from the start at lever angles (P,), positive in the stroke's sense.
+
+    It tells where a load will be asked for, before `drive` asks it (`reach_problems` of the load).
+    """
+    start = linkage.slide_m(np.array([lever.start_rad]))
+    return travel_sense(lever, linkage) * (linkage.slide_m(lever_rad) - start)
 
 
 def _moving(lever: Lever, linkage: Linkage | FixedPin, friction: PinAndGuide) -> Linkage:

@@ -6,7 +6,7 @@ from scipy.integrate import quad
 
 from ergo.errors import NothingMovesError, StudyError
 from ergo.frames import GRAVITY_M_S2
-from ergo.mechanism.drive import drive, travel_sense
+from ergo.mechanism.drive import drive, slide_travel_m, travel_sense
 from ergo.mechanism.friction import PinAndGuide
 from ergo.mechanism.handle_path import handle_path
 from ergo.mechanism.lever import Grip, Lever
@@ -123,6 +123,7 @@ def test_slide_travel_counts_from_zero_in_the_sense_of_the_stroke(linkage):
         d = run(lever(*ends), linkage)
         assert d.slide_m[0] == 0.0
         assert d.slide_m[-1] > 0.0
+        np.testing.assert_array_equal(slide_travel_m(lever(*ends), linkage, d.lever_rad), d.slide_m)
         assert travel_sense(lever(*ends), linkage) == -travel_sense(lever(*ends[::-1]), linkage)
 
 
