@@ -104,7 +104,9 @@ class Segments:
         segment, sex = self._of(name, women)
         return segment.gyration[sex]
 
-    def arm(self, women: ArrayLike, mass_kg: ArrayLike, forearm_grip_m: ArrayLike, wrist_grip_m: ArrayLike) -> ArmMasses:
+    def arm(
+        self, women: ArrayLike, mass_kg: ArrayLike, forearm_grip_m: ArrayLike, wrist_grip_m: ArrayLike
+    ) -> ArmMasses:
         """Return the masses of the working arm, forearm and fist as one rigid link from elbow to grip.
 
         Parameters
