@@ -1,0 +1,79 @@
+"""CSV files that a study names, read into the study so that everything after it is free of files."""
+
+import csv
+import math
+from pathlib import Path
+from typing import Any
+
+from ergo.errors import Problem
+from ergo.study.model import Study
+
+LARGEST_ROWS = 20_000
+_COLUMNS = {
+    "linkage": ("lever_deg", "slide_mm"),
+    "load": ("slide_mm", "force_n"),
+    "path": ("x_mm", "y_mm", "z_mm", "force_n"),
+}
+_RISING = {"linkage": "lever_deg", "load": "slide_mm"}
+
+
+def attach_rows(study: Study) -> tuple[Study, list[Problem]]:
+    """Return the study with the rows of the CSV files it names, and what is wrong with those files."""
+    update: dict[str, Any] = {}
+    problems: list[Problem] = []
+    for section, columns in _COLUMNS.items():
+        part = getattr(study, section)
+        file = getattr(part, "file", None)
+        if part is None or file is None:
+            continue
+        rows, found = _read_rows(Path(study.folder) / file, f"{section}.file", columns, _RISING.get(section))
+        problems += found
+        update[section] = part.model_copy(update={"rows": rows})
+    return study.model_copy(update=update), problems
+
+
+def _read_rows(path: Path, where: str, columns: tuple[str, ...], rising: str | None
+               ) -> tuple[tuple[tuple[float, ...], ...], list[Problem]]:  # fmt: skip
+    expected = ", ".join(columns)
+    try:
+        with path.open(encoding="utf-8-sig", newline="") as lines:
+            table = list(csv.reader(lines))
+    except FileNotFoundError:
+        return (), [Problem(where, "there is no such file", str(path.name), f"a CSV of {expected}")]
+    except (OSError, UnicodeDecodeError, csv.Error) as error:
+        return (), [Problem(where, f"cannot be read as a CSV file: {error}", path.name, f"a CSV of {expected}")]
+    table = [row for row in table if any(cell.strip() for cell in row)]
+    if not table or tuple(cell.strip() for cell in table[0]) != columns:
+        got = ", ".join(table[0]) if table else "an empty file"
+        return (), [Problem(where, "does not have the expected columns", got, expected)]
+    if not 3 <= len(table) <= LARGEST_ROWS + 1:
+        return (), [Problem(where, "has too few or too many rows", str(len(table) - 1), f"2 to {LARGEST_ROWS}")]
+    rows, problems = [], []
+    for n, cells in enumerate(table[1:], 2):
+        numbers = _numbers(cells, len(columns))
+        if numbers is None:
+            what = f"line {n} is not {len(columns)} finite numbers"
+            problems.append(Problem(where, what, ", ".join(cells)[:60], expected))
+        else:
+            rows.append(numbers)
+    if not problems and rising is not None:
+        problems += _order_problems(rows, where, rising)
+    return tuple(rows), problems[:10]
+
+
+def _numbers(cells: list[str], count: int) -> tuple[float, ...] | None:
+    try:
+        numbers = tuple(float(cell) for cell in cells)
+    except ValueError:
+        return None
+    return numbers if len(numbers) == count and all(math.isfinite(v) for v in numbers) else None
+
+
+def _order_problems(rows: list[tuple[float, ...]], where: str, rising: str) -> list[Problem]:
+    """Return where the first column turns back: it must rise throughout (lever angles may also fall throughout)."""
+    steps = [b[0] - a[0] for a, b in zip(rows, rows[1:], strict=False)]
+    falls = rising == "lever_deg" and all(s < 0.0 for s in steps)
+    if falls or all(s > 0.0 for s in steps):
+        return []
+    turn = next(n for n, s in enumerate(steps) if s <= 0.0)
+    return [Problem(where, f"{rising} must rise from row to row, line {turn + 3} does not", f"{rows[turn + 1][0]:g}")]
