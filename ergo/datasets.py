@@ -141,6 +141,15 @@ class Library:
             raise DataError(msg)
         return Library(MappingProxyType({**self.changes, (key, name): float(value)}))
 
+    def with_factor(self, key: str, row: str, factor: float) -> "Library":
+        """Return a library in which one row of a table that is no parameter table is scaled by `factor`."""
+        self.table(key)
+        return Library(MappingProxyType({**self.changes, (key, row): float(factor)}))
+
+    def factor(self, key: str, row: str) -> float:
+        """Return the factor by which a row is scaled, 1 where it is as shipped."""
+        return self.changes.get((key, row), 1.0)
+
 
 def library() -> Library:
     """Return the shipped tables as they are."""
