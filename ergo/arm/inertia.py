@@ -124,7 +124,7 @@ def _link_inertia(link: Array, axis: Array, mass: Array, gyration: Array) -> Arr
     """Return a link's inertia (..., 3, 3) about its centre of mass; its transverse axis is the elbow's."""
     length = np.linalg.norm(link, axis=-1)
     long = link / length[..., None]
-    frame = np.stack([np.cross(long, axis), axis, long], axis=-1)
+    frame = np.stack([np.cross(axis, long), axis, long], axis=-1)
     radii = _spread(gyration, link.ndim - 1, trailing=1) * length[..., None]
     return np.einsum("...ik,...k,...jk->...ij", frame, mass[..., None] * radii**2, frame)
 

@@ -46,7 +46,7 @@ def chain(shoulder, elbow, grip, masses, k):
 
     def frame(link):
         long = link / np.linalg.norm(link)
-        return np.column_stack([np.cross(long, axis), axis, long])
+        return np.column_stack([np.cross(axis, long), axis, long])
 
     model = pin.Model()
     first, second = frame(upper), frame(lower)
