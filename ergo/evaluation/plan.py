@@ -30,6 +30,7 @@ class Plan:
     task: HandTask
     repetition: Repetition
     bench: Bench
+    grip_note: str
 
 
 def plan(study: Study, library: Library, operators: Operators | None = None) -> Plan:
@@ -61,7 +62,7 @@ def plan(study: Study, library: Library, operators: Operators | None = None) -> 
         library=library,
     )
     bench = pack(people, place, task, held.breakaway_across_n, held.slide_along_n, library)
-    return Plan(study, library, machine, people, place, task, repeated, bench)
+    return Plan(study, library, machine, people, place, task, repeated, bench, held.not_covered)
 
 
 def people_of(study: Study, library: Library) -> Operators:

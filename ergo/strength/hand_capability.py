@@ -98,6 +98,11 @@ class Bench:
     targets: Array
     mirror: float
 
+    @property
+    def ankle_z_m(self) -> Array:
+        """Height of the ankles, or of the hips when seated (n,) [m]."""
+        return self.ops[:, k.ANKLE_Z]
+
 
 def scene_vector(place: Workplace, task: HandTask, ranges: JointRanges, library: Library) -> Array:
     """Return the kernel's scene vector (17,)."""

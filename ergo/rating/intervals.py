@@ -1,0 +1,60 @@
+"""95 % intervals of shares and means from the operators drawn."""
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array = NDArray[np.float64]
+Z = 1.959963984540054  # standard normal quantile of 0.975
+
+
+def share_interval(hit: NDArray[np.bool_], women: NDArray[np.bool_]) -> tuple[float, float, float]:
+    """Return a share and its 95 % interval, women and men as strata of fixed size.
+
+    Parameters
+    ----------
+    hit, women : arrays
+        (n,) whether the person counts, and whether a woman.
+
+    Returns
+    -------
+    tuple
+        Share, low, high in 0..1.
+
+    Notes
+    -----
+    Each stratum by Wilson's score interval; the strata's half widths are joined as the square root of the sum of
+    their squares, each side apart (Newcombe's way of joining intervals). Exact for one stratum.
+    """
+    total = hit.size
+    share, below, above = 0.0, 0.0, 0.0
+    for chosen in (women, ~women):
+        n = int(chosen.sum())
+        if n == 0:
+            continue
+        weight, p = n / total, float(hit[chosen].mean())
+        low, high = wilson(p, n)
+        share += weight * p
+        below += (weight * (p - low)) ** 2
+        above += (weight * (high - p)) ** 2
+    return share, max(share - float(np.sqrt(below)), 0.0), min(share + float(np.sqrt(above)), 1.0)
+
+
+def wilson(p: float, n: int) -> tuple[float, float]:
+    """Return Wilson's 95 % score interval of a share `p` of `n`."""
+    middle = (p + Z * Z / (2 * n)) / (1 + Z * Z / n)
+    half = Z / (1 + Z * Z / n) * np.sqrt(p * (1 - p) / n + Z * Z / (4 * n * n))
+    return float(max(middle - half, 0.0)), float(min(middle + half, 1.0))
+
+
+def mean_interval(values: Array, women: NDArray[np.bool_]) -> tuple[float, float, float]:
+    """Return the mean of (n,) values and its 95 % interval, women and men as strata of fixed size."""
+    total, mean, variance = values.size, 0.0, 0.0
+    for chosen in (women, ~women):
+        n = int(chosen.sum())
+        if n == 0:
+            continue
+        weight = n / total
+        mean += weight * float(values[chosen].mean())
+        variance += weight**2 * float(values[chosen].var(ddof=1) if n > 1 else 0.0) / n
+    half = Z * float(np.sqrt(variance))
+    return mean, mean - half, mean + half
