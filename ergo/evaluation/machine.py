@@ -11,8 +11,8 @@ from ergo.mechanism.zones import Zone
 from ergo.study.model import Study
 from ergo.study.trade import (
     friction_of,
-    lever_of,
     letting_go,
+    lever_of,
     linkage_of,
     load_of,
     measured_of,

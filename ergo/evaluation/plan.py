@@ -77,7 +77,7 @@ def people_of(study: Study, library: Library) -> Operators:
         count=asked.count,
         seed=asked.seed,
         hand=asked.hand,
-        age_years=tuple(asked.age_years),
+        age_years=(asked.age_years[0], asked.age_years[1]),
         shoes_mm=asked.shoes_mm,
         glove=asked.glove,
     )

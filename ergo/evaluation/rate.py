@@ -21,7 +21,7 @@ def rate(made: Plan, capability: HandCapability, posture: Posture, gap: Gaps, go
          counted: Tally) -> dict[str, Rating]:  # fmt: skip
     """Return the seven ratings by name."""
     drive, targets, women = made.machine.drive, made.study.targets, made.people.women
-    through = capability.reached.all(axis=1)
+    through = np.logical_and.reduce(capability.reached, axis=1)
     demand = made.task.demand_n
     points, bands = posture_points(made, posture)
     weight = np.maximum(demand, 0.0) + 0.05 * max(float(np.max(demand)), 1.0)

@@ -151,10 +151,8 @@ class Results:
         """Return the stroke as a table, one row a position, units in the column names."""
         import pandas as pd
 
-        flat = []
-        for row in (self._position(p) for p in range(self.stroke.stroke.size)):
-            flat.append({k: v for name, value in row.items() for k, v in _flatten(name, value)})
-        return pd.DataFrame(flat)
+        rows = [self._position(p) for p in range(self.stroke.stroke.size)]
+        return pd.DataFrame([{k: v for name, value in r.items() for k, v in _flatten(name, value)} for r in rows])
 
     def ratings_frame(self) -> "pd.DataFrame":
         """Return the ratings as a table, one row a rating."""

@@ -6,23 +6,12 @@ from typing import Protocol
 import numpy as np
 from numpy.typing import ArrayLike
 
-from ergo.datasets import Parameter
 from ergo.errors import Problem
 from ergo.frames import Array
 
 
 class Load(Protocol):
     """What every load can answer."""
-
-    @property
-    def kind(self) -> str:
-        """Its name in the study file."""
-        ...
-
-    @property
-    def parameters(self) -> tuple[Parameter, ...]:
-        """The shipped rows that the load rests on."""
-        ...
 
     def problems(self) -> tuple[Problem, ...]:
         """Return what is not covered or makes no sense, in the keys of the study file."""
@@ -49,16 +38,6 @@ class LetsGo:
 
     load: Load
     at_slide_m: float
-
-    @property
-    def kind(self) -> str:
-        """The kind of the load that lets go."""
-        return self.load.kind
-
-    @property
-    def parameters(self) -> tuple[Parameter, ...]:
-        """The shipped rows that the load rests on."""
-        return self.load.parameters
 
     def problems(self) -> tuple[Problem, ...]:
         """Return the load's own problems, and a let-go before the start."""

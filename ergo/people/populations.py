@@ -175,10 +175,9 @@ def _user_rows(path: Path) -> list[dict[str, str]]:
         raise StudyError([Problem(str(path), "does not have the expected columns", got, ", ".join(USER_COLUMNS))])
     rows = [{k: (v or "").strip() for k, v in r.items() if k} for r in reader]
     problems = [p for n, row in enumerate(rows, 2) for p in _user_row_problems(f"{path.name}:{n}", row)]
-    for sex in SEXES:
-        for name in ("stature", "body_mass"):
-            if not any(r["sex"] == sex and r["dimension"] == name for r in rows):
-                problems.append(Problem(path.name, f"has no {name} for {sex}", "", "at least stature and body_mass by sex"))
+    stated = {(r["sex"], r["dimension"]) for r in rows}
+    wanted = [(sex, name) for sex in SEXES for name in ("stature", "body_mass") if (sex, name) not in stated]
+    problems += [Problem(path.name, f"has no {name} for {sex}", "", "stature and body_mass by sex") for sex, name in wanted]
     if problems:
         raise StudyError(problems)
     return rows

@@ -65,7 +65,7 @@ def fit(records: dict[str, Array], sex: str, rows: NDArray[np.bool_] | None = No
     logs = np.log(np.stack([records[name][chosen] for name in DIMENSIONS], axis=1))
     mean, sd = logs.mean(axis=0), logs.std(axis=0, ddof=1)
     design = np.column_stack([np.ones(len(logs)), logs[:, :2]])
-    solution = np.linalg.lstsq(design, logs[:, 2:], rcond=None)[0]
+    solution = np.asarray(np.linalg.lstsq(design, logs[:, 2:], rcond=None)[0], dtype=np.float64)
     left = logs[:, 2:] - design @ solution
     return BodyFit(
         mean=mean,
@@ -74,7 +74,7 @@ def fit(records: dict[str, Array], sex: str, rows: NDArray[np.bool_] | None = No
         slopes=solution[1:].T.copy(),
         residual_sd=left.std(axis=0, ddof=3),
         r2=1.0 - left.var(axis=0) / logs[:, 2:].var(axis=0),
-        correlation=np.corrcoef(left.T),
+        correlation=np.asarray(np.corrcoef(left.T), dtype=np.float64),
         stature_mass=float(np.corrcoef(logs[:, 0], logs[:, 1])[0, 1]),
     )
 

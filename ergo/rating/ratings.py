@@ -70,7 +70,7 @@ def reach(reached: Flags, limit: NDArray[np.int64], names: tuple[str, ...], wome
 
     `reached` (n, P); `limit` (n, P) says what kept the hand away, as a number into `names`.
     """
-    through = reached.all(axis=1)
+    through = np.logical_and.reduce(reached, axis=1)
     share, low, high = share_interval(through, women)
     at = reached.mean(axis=0)
     worst = int(np.argmin(at))
@@ -86,8 +86,8 @@ def force(margin: Array, reached: Flags, limit: NDArray[np.int64], names: tuple[
 
     `margin` (n, P) allowed over needed force, infinite where nothing is needed.
     """
-    able = reached.all(axis=1)
-    enough = np.where(reached, margin >= margin_min, True).all(axis=1)
+    able = np.logical_and.reduce(reached, axis=1)
+    enough = np.logical_and.reduce(~reached | (margin >= margin_min), axis=1)
     if not able.any():
         return Rating("force", 0.0, 0.0, 0.0, 100 * served_share, False, 0.0, "reach",
                       "Nobody reaches through the whole stroke, so nobody can give the force.")  # fmt: skip
@@ -126,7 +126,7 @@ def clearance(gap_m: Array, zone: NDArray[np.int64], zone_names: tuple[str, ...]
     if not zone_names:
         return Rating("clearance", 100.0, 100.0, 100.0, 100 * served_share, True, 0.0, "no zones",
                       "No zones are given, so nothing is near the hand.")  # fmt: skip
-    keeps = (gap_m >= gap_min_m).all(axis=1)
+    keeps = np.logical_and.reduce(gap_m >= gap_min_m, axis=1)
     keeps_counted, women_counted = (keeps[counted], women[counted]) if counted.any() else (keeps, women)
     share, low, high = share_interval(keeps_counted, women_counted)
     person, worst = np.unravel_index(int(np.argmin(gap_m)), gap_m.shape)

@@ -96,12 +96,20 @@ def schema() -> list[dict[str, Any]]:
         if field.exclude:
             continue
         for model in _models(field.annotation):
-            kind = next((f.annotation.__args__[0] for n, f in model.model_fields.items()
-                         if n in ("kind", "shape") and len(getattr(f.annotation, "__args__", ())) == 1), "")  # fmt: skip
+            kind = _tag(model)
             for name, inner in model.model_fields.items():
                 if not inner.exclude and isinstance(inner.json_schema_extra, dict):
                     found.append(_row(section, kind if section in ("linkage", "load", "zones") else "", name, inner))
     return found
+
+
+def _tag(model: type[BaseModel]) -> str:
+    """Return the one word that marks a model as a kind of its section, empty where it has none."""
+    for name in ("kind", "shape"):
+        words = getattr(model.model_fields[name].annotation, "__args__", ()) if name in model.model_fields else ()
+        if len(words) == 1:
+            return str(words[0])
+    return ""
 
 
 def _row(section: str, kind: str, name: str, field: Any) -> dict[str, Any]:

@@ -97,7 +97,7 @@ def _units(number: float, row: dict[str, Any]) -> str:
         for factor, other in ((1000.0, "m"), (0.001, "um")):
             if number and not _outside(number * factor, row):
                 return f"did you mean {number * factor:g} mm? (it looks like {other})"
-    if 0.0 < abs(number) and row["high"] in (0, 1) and not _outside(number / 100.0, row):
+    if abs(number) > 0.0 and row["high"] in (0, 1) and not _outside(number / 100.0, row):
         return f"did you mean {number / 100.0:g}? (it looks like percent)"
     return ""
 

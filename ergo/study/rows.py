@@ -1,6 +1,7 @@
 """CSV files that a study names, read into the study so that everything after it is free of files."""
 
 import csv
+import itertools
 import math
 from pathlib import Path
 from typing import Any
@@ -71,7 +72,7 @@ def _numbers(cells: list[str], count: int) -> tuple[float, ...] | None:
 
 def _order_problems(rows: list[tuple[float, ...]], where: str, rising: str) -> list[Problem]:
     """Return where the first column turns back: it must rise throughout (lever angles may also fall throughout)."""
-    steps = [b[0] - a[0] for a, b in zip(rows, rows[1:], strict=False)]
+    steps = [b[0] - a[0] for a, b in itertools.pairwise(rows)]
     falls = rising == "lever_deg" and all(s < 0.0 for s in steps)
     if falls or all(s > 0.0 for s in steps):
         return []

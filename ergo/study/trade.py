@@ -39,9 +39,9 @@ def lever_of(study: Study) -> Lever:
     if made is None:
         msg = "the study has no lever"
         raise ValueError(msg)
-    axis = made.axis if isinstance(made.axis, str) else tuple(made.axis)
+    axis: Any = made.axis
     return Lever(
-        pivot_m=tuple(v * MM for v in made.pivot_mm),
+        pivot_m=_point(made.pivot_mm),
         axis=axis,
         length_m=made.length_mm * MM,
         start_rad=float(np.deg2rad(made.start_deg)),
