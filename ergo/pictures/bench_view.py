@@ -373,7 +373,7 @@ def _people_extent(results: Results, view: View, position: int) -> Extent:
     rows = [np.asarray(results.stroke.handle_mm)]
     for person in results.persons[:3]:
         rows += [np.asarray(p)[position][None] for p in person.points_mm.values()]
-        feet = np.asarray(next(iter(person.points_mm.values())))[position]
+        feet = np.asarray(person.points_mm["foot"])[position]
         rows.append(np.array([[feet[0], feet[1], person.stature_mm + 60.0], [feet[0], feet[1] - 200.0, 0.0]]))
     rows.append(np.array([[0.0, 0.0, 0.0], [0.0, 160.0, results.study["bench"]["surface_height_mm"]]]))
     for zone in results.study.get("zones", ()):
@@ -392,7 +392,7 @@ def _reach_lines(sheet: Sheet, frame: Frame, results: Results, extent: Extent) -
         if inside.sum() < 2:
             continue
         sheet.open("reach", name=name)
-        women = "women" in name
+        women = "wom" in name
         xy = frame.flat_at(flat)
         for part in np.split(np.arange(len(xy)), np.flatnonzero(np.diff(inside.astype(int))) + 1):
             if inside[part[0]]:

@@ -1,7 +1,5 @@
 """Operators as plain jointed outlines in hairline, in the posture the model chose."""
 
-from collections.abc import Mapping
-
 import numpy as np
 from numpy.typing import NDArray
 
@@ -14,58 +12,39 @@ Array = NDArray[np.float64]
 
 # Half widths of the outlines as a share of stature: drawing only, nothing is computed from them.
 LIMBS = (
-    ("ankle", "knee", 0.019, 0.028),
+    ("foot", "knee", 0.019, 0.028),
     ("knee", "hip", 0.028, 0.040),
-    ("hip", "shoulder", 0.048, 0.058),
+    ("hip", "neck", 0.048, 0.058),
     ("shoulder", "elbow", 0.026, 0.020),
     ("elbow", "wrist", 0.020, 0.013),
 )
 HEAD, FIST = 0.050, 0.022
 FOOT_LENGTH, FOOT_HEIGHT, FOOT_BEHIND = 0.152, 0.035, 0.040
-TRUNK_WITH_NECK = 1.16
+NEAR_FLOOR_MM = 80.0
+NEEDED = ("foot", "knee", "hip", "neck", "head", "shoulder", "elbow", "wrist", "grip")
 
 
 def draw_person(sheet: Sheet, frame: Frame, person: Person, position: int, *, inked: bool = False) -> Array | None:
     """Draw one operator at a stroke position; return where the head is on the sheet, None when not drawable."""
     points = {name: np.asarray(rows, dtype=float)[position] for name, rows in person.points_mm.items()}
-    if not all(name in points and np.isfinite(points[name]).all() for name in ("hip", "shoulder", "elbow", "wrist")):
+    if not all(name in points and np.isfinite(points[name]).all() for name in NEEDED):
         return None
-    points = _completed(points, person.stature_mm)
     dash = theme.WOMEN_DASH if person.women else theme.MEN_DASH
     ink = sheet.ink.ink if inked else sheet.ink.grey
     weight = theme.PATH if inked else theme.THIN
     per_stature = person.stature_mm * frame.units_per_mm
     sheet.open("person", name=person.name)
     for start, end, wide, narrow in LIMBS:
-        if start in points and end in points:
-            outline = _limb(frame.at(points[start]), frame.at(points[end]), wide * per_stature, narrow * per_stature)
-            sheet.line(outline, stroke=ink, weight=weight, dash=dash, closed=True)
-    if "foot" in points:
-        sheet.line(_foot(frame, points, person.stature_mm), stroke=ink, weight=weight, dash=dash, closed=True)
+        outline = _limb(frame.at(points[start]), frame.at(points[end]), wide * per_stature, narrow * per_stature)
+        sheet.line(outline, stroke=ink, weight=weight, dash=dash, closed=True)
+    sheet.line(_foot(frame, points["foot"], person.stature_mm), stroke=ink, weight=weight, dash=dash, closed=True)
     head = frame.at(points["head"])
     sheet.circle(head, HEAD * per_stature, stroke=ink, weight=weight, dash=dash)
-    sheet.circle(frame.at(points["fist"]), FIST * per_stature, stroke=ink, weight=weight, dash=dash)
+    sheet.circle(frame.at(points["grip"]), FIST * per_stature, stroke=ink, weight=weight, dash=dash)
     for joint in ("hip", "shoulder", "elbow", "wrist"):
         sheet.circle(frame.at(points[joint]), 1.5, stroke=ink, fill=ink)
     sheet.close()
     return head
-
-
-def _completed(points: Mapping[str, Array], stature: float) -> dict[str, Array]:
-    """Add knee, head and fist where the results do not give them."""
-    made = dict(points)
-    middle = made["hip"].copy()
-    trunk = made["shoulder"] - made["hip"]
-    # The shoulder lies beside the middle of the body; the neck goes on from the hips in the middle plane.
-    spine = np.array([0.0, trunk[1], trunk[2]])
-    if "head" not in made:
-        made["head"] = middle + spine * TRUNK_WITH_NECK + spine / np.linalg.norm(spine) * HEAD * stature
-    if "fist" not in made:
-        made["fist"] = made["grip"] if "grip" in made else made["wrist"]
-    if "ankle" in made:
-        made.setdefault("knee", (made["ankle"] + made["hip"]) / 2.0)
-        made["foot"] = made["ankle"]
-    return made
 
 
 def _limb(start: Array, end: Array, wide: float, narrow: float) -> Array:
@@ -80,13 +59,13 @@ def _limb(start: Array, end: Array, wide: float, narrow: float) -> Array:
     return np.concatenate([round_near, end + narrow * np.stack([np.cos(far), np.sin(far)], axis=1)])
 
 
-def _foot(frame: Frame, points: Mapping[str, Array], stature: float) -> Array:
+def _foot(frame: Frame, ankle: Array, stature: float) -> Array:
     """Outline of the shoe, seen from the side; the sole lies on the floor below the ankle."""
-    x, y, z = points["ankle"]
+    x, y, z = ankle
     low, high = z - FOOT_HEIGHT * stature, z
     heel, toe = y - FOOT_BEHIND * stature, y + (FOOT_LENGTH - FOOT_BEHIND) * stature
     # A sole near the floor stands on it: the drawing's foot is only as high as the ankle.
-    low = 0.0 if low < 80.0 else low
+    low = 0.0 if low < NEAR_FLOOR_MM else low
     corners = [[x, heel, low], [x, toe, low], [x, toe, low + 0.4 * (high - low)], [x, y + 0.03 * stature, high], [x, heel, high]]
     return frame.at(np.array(corners))
 

@@ -8,8 +8,9 @@ TEXT, SMALL, TITLE = 11.0, 9.5, 13.0
 WOMEN_DASH, MEN_DASH = "6 3", ""
 CENTRE_DASH, HIDDEN_DASH, DOTTED = "10 2 2 2", "4 2.5", "0.1 4"
 UNITS_PER_PAPER_MM = 4.0
-# A stroke direction counts as pull or push when at least half of it lies that way, else it is neither.
-CLEAR_SHARE = 0.5
+# A stroke direction counts as pull or push when over a third of it lies that way, else it is neither; the same
+# bound as in the direction rating.
+CLEAR_SHARE = 0.35
 # Numbers closer than this are the same number on paper.
 DECIMALS = 2
 

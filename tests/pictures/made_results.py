@@ -16,12 +16,12 @@ PIVOT = (120.0, 250.0, 1110.0)
 LENGTH = 300.0
 START, END = -10.0, 60.0
 SOURCES = (
-    {"table": "joint_strength", "name": "elbow.flexion", "value": "77", "unit": "N m", "source": "askew_1987",
-     "locator": "table 1", "status": "memory"},
-    {"table": "joint_ranges", "name": "elbow", "value": "142", "unit": "deg", "source": "boone_azen_1979",
-     "locator": "", "status": "seen"},
-    {"table": "mechanism_practice", "name": "rack.pressure_angle", "value": "20", "unit": "deg", "source": "iso_53",
-     "locator": "", "status": "seen"},
+    {"table": "joint_strength", "title": "Isometric strength at each joint", "row": "elbow_flexion", "value": "77",
+     "unit": "N m", "source": "askew_1987", "locator": "table 1", "status": "memory"},
+    {"table": "joint_ranges", "title": "Ranges of motion", "row": "elbow", "value": "142", "unit": "deg",
+     "source": "boone_azen_1979", "locator": "", "status": "seen"},
+    {"table": "mechanism_practice", "title": "Practice of the trade", "row": "rack.pressure_angle", "value": "20",
+     "unit": "deg", "source": "iso_53", "locator": "", "status": "seen"},
 )  # fmt: skip
 
 
@@ -128,8 +128,10 @@ def person(name, women, stature, served=True):
     shoulder = fixed(120.0, -180.0, 0.81 * stature)
     wrist = grip + np.array([0.0, -60.0, -30.0])
     elbow = (shoulder + wrist) / 2.0 + np.array([40.0, 0.0, -120.0])
-    points = {"ankle": fixed(0.0, -250.0, 95.0), "hip": fixed(0.0, -230.0, 0.53 * stature), "shoulder": shoulder,
-              "elbow": elbow, "wrist": wrist, "grip": grip}  # fmt: skip
+    points = {"foot": fixed(0.0, -250.0, 95.0), "knee": fixed(0.0, -240.0, 0.29 * stature),
+              "hip": fixed(0.0, -230.0, 0.53 * stature), "neck": fixed(0.0, -180.0, 0.81 * stature),
+              "head": fixed(0.0, -160.0, 0.93 * stature), "shoulder": shoulder, "elbow": elbow, "wrist": wrist,
+              "grip": grip}  # fmt: skip
     return Person(name, women, stature, 70.0, served, points, 12.0 * ones, 110.0 * ones, 150.0 * ones)
 
 
@@ -186,8 +188,8 @@ def made(*, short=True, **changes):
         people={"population": "us_adults_2015", "count": 8, "women_share": 0.5},
         ratings=rated,
         stroke=stroke_table(),
-        persons=(person("woman P5", True, 1520.0, served=not short), person("woman P50", True, 1630.0),
-                 person("man P95", False, 1890.0)),
+        persons=(person("small woman (P5)", True, 1520.0, served=not short), person("middle (P50)", True, 1630.0),
+                 person("large man (P95)", False, 1890.0)),
         crowd=crowd(),
         verdict=verdict,
         reasons=(head, "The largest needed force is 140 N at 80 % of the stroke."),
@@ -196,9 +198,9 @@ def made(*, short=True, **changes):
         sources=SOURCES,
         details={
             "reach_lines_mm": {
-                "women P5": [[120.0, -180.0 + 560.0 * math.cos(a), 1230.0 + 560.0 * math.sin(a)]
+                "small woman (P5)": [[120.0, -180.0 + 560.0 * math.cos(a), 1230.0 + 560.0 * math.sin(a)]
                              for a in np.linspace(-1.2, 1.4, 30)],
-                "men P95": [[120.0, -180.0 + 760.0 * math.cos(a), 1530.0 + 760.0 * math.sin(a)]
+                "large man (P95)": [[120.0, -180.0 + 760.0 * math.cos(a), 1530.0 + 760.0 * math.sin(a)]
                             for a in np.linspace(-1.4, 1.0, 30)],
             },
             "let_go": {"sentences": ["The handle runs on 61 mm (38 to 94 mm) toward the operator."]},

@@ -1,0 +1,217 @@
+"""The argument, one claim at a time: each with its number, interval, target, source and status."""
+
+from collections.abc import Iterable
+
+import numpy as np
+
+from ergo.evaluation.results import Results
+from ergo.pictures.ratings_view import label
+from ergo.pictures.ribbon import let_go_stroke, overrun_at
+from ergo.pictures.sheet import figure, quantity
+from ergo.report.blocks import Claim, Words
+from ergo.sources import weakest
+
+# Which tables a claim rests on, by the beginning of their keys. The population's own table is added by name.
+_BODY = ("body_", "mass_on_stature", "joint_ranges", "stance_parameters")
+_STRENGTH = ("joint_strength", "strength_variation", "age_strength", "grip_", "segment_parameters", "stance_parameters")
+_MACHINE = ("drilling", "elastic", "sliding_friction", "mechanism_practice")
+TABLES = {
+    "reach": _BODY,
+    "direction": _MACHINE,
+    "force": (*_STRENGTH, "repetition", *_MACHINE),
+    "handbook": ("arm_force_mil",),
+    "standard": ("en_1005_3",),
+    "repetition": ("repetition",),
+    "posture": ("posture_bands", "joint_ranges"),
+    "clearance": (*_BODY, "posture_bands"),
+    "let_go": ("letgo_hand", "letgo_body", "letgo_bands", "body_contact", "segment_parameters"),
+    "feel": ("letgo_feel",),
+    "strong end": ("strong_end", "lever_materials", "metric_threads", *_STRENGTH),
+    "twist": ("letgo_twist", "grip_"),
+    "served": ("",),
+}
+RATED_HEADS = {
+    "reach": "The handle can be reached",
+    "direction": "The working stroke is a pull",
+    "force": "The needed force can be given",
+    "posture": "The posture is one that can be kept up",
+    "clearance": "Hand and forearm stay clear",
+    "let_go": "A let-go can be survived on one's feet",
+    "served": "The lever serves the people it is meant for",
+}
+
+
+def backing(results: Results, claim: str) -> tuple[tuple[str, str], ...]:
+    """Return source keys with the weakest status of their numbers, for the tables that a claim rests on."""
+    begins = TABLES[claim]
+    own = {str(results.people.get("population", ""))} if claim in ("reach", "clearance", "force", "served") else set()
+    statuses: dict[str, list[str]] = {}
+    for row in results.sources:
+        if row["table"] in own or row["table"].startswith(begins):
+            statuses.setdefault(row["source"], []).append(row["status"])
+    return tuple((key, weakest(found)) for key, found in sorted(statuses.items()))
+
+
+def argument(results: Results) -> list[tuple[str, list[Claim | Words]]]:
+    """Return the claims in the order of the argument, under their headings."""
+    found: list[tuple[str, list[Claim | Words]]] = []
+    for name in ("reach", "direction"):
+        found.append((RATED_HEADS[name], [rated(results, name)]))
+    found.append((RATED_HEADS["force"], [rated(results, "force"), *opinions(results)]))
+    found.append(("The job repeats", repetition(results)))
+    for name in ("posture", "clearance"):
+        found.append((RATED_HEADS[name], [rated(results, name)]))
+    found.append((RATED_HEADS["let_go"], let_go(results)))
+    found.append(("The hand still feels the tool", feel(results)))
+    found.append(("The strongest operator does not break it", strong_end(results)))
+    found.append((RATED_HEADS["served"], [rated(results, "served")]))
+    return [(title, rows) for title, rows in found if rows]
+
+
+def rated(results: Results, name: str) -> Claim | Words:
+    """Return a rating as a claim; words that say so where it was not rated."""
+    if name not in results.ratings:
+        return Words(f"{label(name).capitalize()} was not rated in this study.")
+    r = results.ratings[name]
+    target = f"{figure(r.target, 1)}" if np.isfinite(r.target) else "none set"
+    value = f"{figure(r.value, 1)} of 100" if np.isfinite(r.value) else "not rated"
+    return Claim(label(name), r.reason, value, between(r.low, r.high, ""), target, bool(r.met), backing(results, name))
+
+
+def between(low: float, high: float, unit: str, decimals: int = 1) -> str:
+    """Return an interval in words."""
+    if not (np.isfinite(low) and np.isfinite(high)):
+        return "no interval: no operator enters it"
+    text = f"{figure(low, decimals)} to {figure(high, decimals)}"
+    return f"{text}\u202f{unit}" if unit else text
+
+
+def hardest(results: Results) -> int:
+    """Return the position where the needed force is largest."""
+    return int(np.nanargmax(np.where(np.isfinite(results.stroke.demand_n), results.stroke.demand_n, -np.inf)))
+
+
+def opinions(results: Results) -> list[Claim | Words]:
+    """Return force three ways at the hardest position: model, handbook table, standard."""
+    s, p = results.stroke, hardest(results)
+    where = f"at {quantity(100 * s.stroke[p], '%')} of the stroke, where {quantity(s.demand_n[p], 'N')} is needed"
+    found: list[Claim | Words] = []
+    weak, usual = s.allowed_n["women_p05"][p], s.allowed_n["women_p50"][p]
+    found.append(
+        Claim(
+            "force, first way: joint moments",
+            f"The model allows the weakest twentieth of the women {quantity(weak, 'N')} and the middle of the women "
+            f"{quantity(usual, 'N')} {where}.",
+            quantity(weak, "N"), between(weak, s.allowed_n["men_p50"][p], "N", 0) + " (women P5 to men P50)",
+            f"{quantity(s.demand_n[p], 'N')} needed", None, backing(results, "force"),
+        )
+    )  # fmt: skip
+    for key, name, claim in (("table_n", "second way: handbook table", "handbook"),
+                             ("en_1005_3_n", "third way: EN 1005-3", "standard")):  # fmt: skip
+        found.append(_opinion(results, key, name, claim, p, where))
+    return found
+
+
+def _opinion(results: Results, key: str, name: str, claim: str, p: int, where: str) -> Claim | Words:
+    values = np.asarray(getattr(results.stroke, key), dtype=float)
+    reason = results.stroke.not_covered.get(key, "the method gives no value here")
+    if not np.isfinite(values[p]):
+        return Words(f"Force, {name}: not covered {where}: {reason}.")
+    known = values[np.isfinite(values)]
+    text = f"It gives {quantity(values[p], 'N')} {where}; {quantity(known.min(), 'N')} to {quantity(known.max(), 'N')} along the stroke."
+    if key in results.stroke.not_covered:
+        text += f" Elsewhere it is not covered: {reason}."
+    need = results.stroke.demand_n[p]
+    return Claim(f"force, {name}", text, quantity(values[p], "N"), between(known.min(), known.max(), "N", 0) + " along the stroke",
+                 f"{quantity(need, 'N')} needed", None, backing(results, claim))  # fmt: skip
+
+
+def said(results: Results, key: str) -> list[str]:
+    """Return the sentences that the results carry about a detail."""
+    detail = results.details.get(key) or {}
+    return list(detail.get("sentences", ())) if isinstance(detail, dict) else [str(s) for s in detail]
+
+
+def repetition(results: Results) -> list[Claim | Words]:
+    """Return what repetition and holding leave of the strength at the hardest position."""
+    s, p, duty = results.stroke, hardest(results), results.study["duty"]
+    capable, allowed = s.capability_n["women_p50"][p], s.allowed_n["women_p50"][p]
+    if not (np.isfinite(capable) and capable > 0.0):
+        return []
+    share = 100.0 * allowed / capable
+    text = (
+        f"At {quantity(duty['strokes_per_minute'], 'strokes a minute', 1)} of {quantity(duty['stroke_s'], 's', 1)} for "
+        f"{quantity(duty['hours_per_shift'], 'h', 1)} a shift, {quantity(share, '%')} of the single-effort strength may be used."
+    )
+    found: list[Claim | Words] = [
+        Claim("repetition", text, quantity(share, "%"), "no interval: one value for all", "none set", None,
+              backing(results, "repetition"))
+    ]  # fmt: skip
+    return found + [Words(t) for t in said(results, "repetition")]
+
+
+def let_go(results: Results) -> list[Claim | Words]:
+    """Return the let-go rating, with overrun and balance where the load lets go."""
+    found: list[Claim | Words] = [rated(results, "let_go")]
+    at = let_go_stroke(results)
+    if at is None:
+        return [*found, Words("The study names no position where the load lets go, so no overrun was worked out.")]
+    overrun = overrun_at(results, at)
+    p = int(np.argmin(np.abs(results.stroke.stroke - at)))
+    if overrun is not None:
+        toward = next((t for t in (results.stroke.overrun_toward[p], *results.stroke.overrun_toward) if t), "")
+        text = (
+            f"When the load lets go at {quantity(100 * at, '%')} of the stroke the handle runs on by "
+            f"{quantity(overrun[1], 'mm')} in the middle case" + (f", {toward}." if toward else ".")
+        )
+        found.append(Claim("overrun", text, quantity(overrun[1], "mm"), between(overrun[0], overrun[2], "mm", 0), "none set", None,
+                           backing(results, "let_go")))  # fmt: skip
+    balance = np.asarray(results.stroke.balance, dtype=float)[p]
+    if np.isfinite(balance).all():
+        kept, step, thrown = (quantity(100 * v, "%", 1) for v in balance)
+        text = f"{kept} keep their feet in place, {step} take one step, {thrown} are thrown off their feet."
+        found.append(Claim("balance", text, kept, f"one step {step}, thrown {thrown}", "none set", None,
+                           backing(results, "let_go")))  # fmt: skip
+    return found + [Words(t) for t in said(results, "let_go")]
+
+
+def feel(results: Results) -> list[Claim | Words]:
+    """Return the smallest change of tool force that the hand would notice."""
+    values = np.asarray(results.stroke.feel_n, dtype=float)
+    if not np.isfinite(values).any():
+        reason = results.stroke.not_covered.get("feel_n")
+        return [Words(f"Feel is not covered: {reason}.")] if reason else []
+    low, high = float(np.nanmin(values)), float(np.nanmax(values))
+    p = int(np.nanargmax(values))
+    text = (
+        f"The smallest change of tool force that the hand would notice is {quantity(low, 'N', 1)} to {quantity(high, 'N', 1)} along "
+        f"the stroke; it is largest at {quantity(100 * results.stroke.stroke[p], '%')}."
+    )
+    claim = Claim("feel", text, quantity(high, "N", 1), between(low, high, "N") + " along the stroke", "none set", None,
+                  backing(results, "feel"))  # fmt: skip
+    return [claim, *(Words(t) for t in said(results, "feel"))]
+
+
+def strong_end(results: Results) -> list[Claim | Words]:
+    """Return the force that the lever, its pins and stops must survive."""
+    values = np.asarray(results.stroke.capability_n.get("men_p99", np.array([np.nan])), dtype=float)
+    if not np.isfinite(values).any():
+        return []
+    p = int(np.nanargmax(values))
+    text = (
+        f"The strongest hundredth of the men can put {quantity(values[p], 'N')} on the handle, at "
+        f"{quantity(100 * results.stroke.stroke[p], '%')} of the stroke; lever, pins and stops must survive it."
+    )
+    spread = between(float(np.nanmin(values)), float(np.nanmax(values)), "N", 0) + " along the stroke"
+    claim = Claim("strong end", text, quantity(values[p], "N"), spread, "none set", None, backing(results, "strong end"))
+    return [claim, *(Words(t) for t in said(results, "strong_end"))]
+
+
+def unique_sources(results: Results) -> list[str]:
+    """Return every source key that a number of the results names, sorted."""
+    return sorted({row["source"] for row in results.sources})
+
+
+def listed(pairs: Iterable[tuple[str, str]]) -> str:
+    """Return source keys with their status as one line."""
+    return ", ".join(f"{key} ({status})" for key, status in pairs) or "the study's own geometry"
