@@ -1,0 +1,469 @@
+/* The hand on the board: edits are queued here, numbered, and sent once each; pictures arrive and are put in place. */
+(function () {
+  "use strict";
+
+  const board = {
+    known: {},        // what every control shows, by path
+    unheard: [],      // edits the server has not confirmed
+    refused: [],      // edits refused because another tab was first
+    number: 0,        // number of the last edit
+    change: 0,        // last change of the work that this tab has seen
+    busy: false,      // an edit made while dragging waits for its picture
+    held: null,       // the newest edit made while busy
+    dragging: false,
+    lastKey: 0,
+    drawn: null,      // what the last pictures carried
+    position: null,   // stroke position under the pointer
+    timer: null,
+  };
+  window.pullward = board;
+
+  const setProps = (id, props) => window.dash_clientside.set_props(id, props);
+  const idOf = (type, path) => ({ path: path, type: type });
+  const skip = () => window.dash_clientside.no_update;
+  const byId = (id) => document.getElementById(id);
+  const partId = (type, path) => document.getElementById(JSON.stringify({ path: path, type: type }));
+
+  /* ---- sending ---- */
+
+  function stale(on) {
+    document.documentElement.classList.toggle("stale", on);
+    const sheet = byId("page");
+    if (sheet) sheet.setAttribute("aria-busy", on ? "true" : "false");
+  }
+
+  function say(text) {
+    const line = byId("state-line");
+    if (line) line.textContent = text;
+  }
+
+  board.send = function (edit, phase) {
+    if (phase === "drag" && board.busy) {
+      board.held = edit;
+      return;
+    }
+    board.number += 1;
+    board.unheard = board.unheard.filter((e) => !(e.do === "set" && edit.do === "set" && e.path === edit.path && e.phase === "drag"));
+    board.unheard.push(Object.assign({ n: board.number, phase: phase }, edit));
+    board.busy = true;
+    clearTimeout(board.timer);
+    board.timer = setTimeout(() => { board.busy = false; flush(); }, 20000);
+    stale(true);
+    say("working it out");
+    setProps("edit", { data: { edits: board.unheard.slice(), phase: phase, seen: board.change } });
+  };
+
+  function flush() {
+    if (board.held) {
+      const edit = board.held;
+      board.held = null;
+      board.send(edit, board.dragging ? "drag" : "rest");
+    }
+  }
+
+  board.set = function (path, value, phase) {
+    if (same(board.known[path], value)) return;
+    board.known[path] = value;
+    board.lastPath = path;
+    stale(true);
+    board.send({ do: "set", path: path, value: value }, phase);
+  };
+
+  function same(a, b) {
+    if (a === b) return true;
+    if (a === undefined || a === null || a === "" || b === undefined || b === null || b === "") return (a || "") === (b || "") && a !== 0 && b !== 0;
+    return typeof a !== "boolean" && typeof b !== "boolean" && Number(a) === Number(b);
+  }
+
+  /* ---- controls ---- */
+
+  board.changed = function () {
+    const hits = window.dash_clientside.callback_context.triggered || [];
+    if (hits.length > 3) return skip();       // a drawer has just been built
+    for (const hit of hits) {
+      const cut = hit.prop_id.lastIndexOf(".");
+      let id;
+      try { id = JSON.parse(hit.prop_id.slice(0, cut)); } catch (error) { continue; }
+      const value = hit.value;
+      if (value === undefined || value === null) continue;
+      if (same(board.known[id.path], value)) continue;
+      if (id.type === "slider") {
+        const twin = partId("value", id.path);
+        if (twin) setProps(idOf("value", id.path), { value: value });
+        board.set(id.path, value, gesture());
+      } else {
+        const slider = partId("slider", id.path);
+        if (slider && typeof value === "number") setProps(idOf("slider", id.path), { value: value });
+        board.set(id.path, value, "rest");
+      }
+    }
+    return skip();
+  };
+
+  /* A slider that a finger or a held key moves is still moving; a single key press is a change at rest. */
+  function gesture() {
+    const now = performance.now();
+    const quick = now - board.lastKey < 250;
+    board.lastKey = now;
+    if (board.dragging) return "drag";
+    if (quick) {
+      clearTimeout(board.restTimer);
+      board.restTimer = setTimeout(rest, 300);
+      return "drag";
+    }
+    return "rest";
+  }
+
+  function rest() {
+    if (board.held) {
+      const edit = board.held;
+      board.held = null;
+      board.send(edit, "rest");
+    } else {
+      board.send({ do: "rest" }, "rest");
+    }
+  }
+
+  document.addEventListener("pointerdown", (event) => {
+    if (event.target.closest && event.target.closest("[role=slider], .mantine-Slider-root")) {
+      board.dragging = true;
+      board.draggedFrom = board.number;
+    }
+  }, true);
+  document.addEventListener("pointerup", () => {
+    if (!board.dragging) return;
+    board.dragging = false;
+    if (board.number !== board.draggedFrom || board.held) setTimeout(rest, 0);
+  }, true);
+
+  /* ---- what arrives ---- */
+
+  board.arrived = function (state) {
+    if (!state) return skip();
+    board.unheard = board.unheard.filter((e) => e.n > state.n);
+    if (state.conflict) {
+      board.refused = state.refused || [];
+      board.busy = false;
+      stale(false);
+      say("changed in another tab");
+      return skip();
+    }
+    board.change = state.change;
+    const waiting = new Set(board.unheard.filter((e) => e.do === "set").map((e) => e.path));
+    if (board.held && board.held.do === "set") waiting.add(board.held.path);
+    for (const [path, value] of Object.entries(state.values)) {
+      if (waiting.has(path) || same(board.known[path], value)) continue;
+      board.known[path] = value;
+      if (partId("value", path) || document.querySelector(`[id*='"path":"${path}"']`)) {
+        setProps(idOf("value", path), typeof value === "boolean" ? { checked: value } : { value: value });
+        if (partId("slider", path) && typeof value === "number") setProps(idOf("slider", path), { value: value });
+      }
+    }
+    tellProblems(state);
+    tellFrame(state);
+    if (!state.sound) {
+      board.busy = false;
+      stale(false);
+      say("not a study yet: " + state.problem_list.length + (state.problem_list.length === 1 ? " problem" : " problems"));
+      document.documentElement.classList.add("unsound");
+      flush();
+    } else {
+      document.documentElement.classList.remove("unsound");
+    }
+    return skip();
+  };
+
+  function tellProblems(state) {
+    const before = board.problems || {};
+    board.problems = state.problems;
+    for (const path of new Set([...Object.keys(before), ...Object.keys(state.problems)])) {
+      const text = state.problems[path] || "";
+      if (before[path] === state.problems[path]) continue;
+      if (partId("problem", path)) setProps(idOf("problem", path), { children: text });
+      else if (partId("value", path)) setProps(idOf("value", path), { error: text || null });
+    }
+  }
+
+  function tellFrame(state) {
+    const title = byId("study-title");
+    if (title) title.textContent = state.title;
+    for (const [id, able] of [["undo", state.can_undo], ["redo", state.can_redo]]) {
+      const button = byId(id);
+      if (button) button.disabled = !able;
+    }
+    document.title = state.title + " - Pullward";
+  }
+
+  board.drew = function (drawn) {
+    if (!drawn) return skip();
+    place("bench-picture", drawn.machine);
+    place("chart-picture", drawn.chart);
+    if (drawn.operators) place("people-picture", drawn.operators);
+    board.drawn = drawn;
+    board.people = {};
+    if (board.position === null || board.position >= drawn.readout.length) board.position = drawn.position;
+    rule();
+    grips();
+    clearTimeout(board.timer);
+    board.busy = false;
+    if (board.held) { flush(); return skip(); }
+    if (!board.unheard.length && drawn.change >= board.change) {
+      stale(false);
+      say(drawn.said);
+    }
+    return skip();
+  };
+
+  function place(id, svg) {
+    const box = byId(id);
+    if (box && svg !== undefined && svg !== null) box.innerHTML = svg;
+  }
+
+  /* ---- the pointer over the stroke ---- */
+
+  function rule() {
+    const box = byId("chart-picture");
+    const svg = box && box.querySelector("svg");
+    if (!svg || !board.drawn || board.position === null) return;
+    const [left, right] = board.drawn.span;
+    const share = board.drawn.strokes[board.position];
+    const x = left + (right - left) * share;
+    let line = svg.querySelector(".rule");
+    if (!line) {
+      line = document.createElementNS("http://www.w3.org/2000/svg", "line");
+      line.setAttribute("class", "rule");
+      svg.appendChild(line);
+    }
+    const height = svg.viewBox.baseVal.height;
+    for (const [name, value] of [["x1", x], ["x2", x], ["y1", 24], ["y2", height - 34]]) line.setAttribute(name, value);
+    mark();
+    const says = byId("pointer-says");
+    if (says) says.textContent = board.drawn.readout[board.position];
+    box.setAttribute("aria-valuenow", Math.round(100 * share));
+    box.setAttribute("aria-valuetext", board.drawn.readout[board.position]);
+  }
+
+  /* The grip on the bench drawing that belongs to the position on the chart. */
+  function mark() {
+    const svg = document.querySelector("#bench-picture svg");
+    if (!svg || !board.drawn.marks) return;
+    svg.querySelectorAll(".grip-mark").forEach((old) => old.remove());
+    for (const view of board.drawn.marks) {
+      const at = view[board.position];
+      const ring = document.createElementNS("http://www.w3.org/2000/svg", "circle");
+      for (const [name, value] of [["class", "grip-mark"], ["cx", at[0]], ["cy", at[1]], ["r", 6]]) ring.setAttribute(name, value);
+      svg.appendChild(ring);
+    }
+  }
+
+  function pointTo(position) {
+    const most = board.drawn.strokes.length - 1;
+    position = Math.max(0, Math.min(most, position));
+    if (position === board.position) return;
+    board.position = position;
+    rule();
+    clearTimeout(board.pointTimer);
+    board.pointTimer = setTimeout(askPeople, 60);
+  }
+
+  function askPeople() {
+    const sheet = byId("sheet");
+    if (!sheet || !board.drawn) return;
+    if (board.people[board.position]) { place("people-picture", board.people[board.position]); return; }
+    setProps("pointer", { data: { position: board.position, key: board.drawn.key } });
+  }
+
+  board.peopleDrew = function (drawn) {
+    if (!drawn || !board.drawn || drawn.key !== board.drawn.key) return skip();
+    board.people[drawn.position] = drawn.svg;
+    if (drawn.position === board.position) place("people-picture", drawn.svg);
+    return skip();
+  };
+
+  document.addEventListener("pointermove", (event) => {
+    const box = event.target.closest && event.target.closest("#chart-picture");
+    if (!box || !board.drawn || board.pulled) return;
+    const svg = box.querySelector("svg");
+    if (!svg) return;
+    const at = new DOMPoint(event.clientX, event.clientY).matrixTransform(svg.getScreenCTM().inverse());
+    const [left, right] = board.drawn.span;
+    pointTo(nearest((at.x - left) / (right - left)));
+  });
+
+  function nearest(share) {
+    let best = 0;
+    board.drawn.strokes.forEach((s, n) => { if (Math.abs(s - share) < Math.abs(board.drawn.strokes[best] - share)) best = n; });
+    return best;
+  }
+
+  /* ---- dimensions that one drags ---- */
+
+  function grips() {
+    document.querySelectorAll("#bench-picture g.dimension[data-key]").forEach((group) => {
+      const path = dimensionPath(group);
+      if (path && path in board.known) group.classList.add("grip");
+    });
+  }
+
+  function dimensionPath(group) {
+    const key = group.dataset.key;
+    if (!key) return "";
+    if (key !== "lever.pivot_mm") return key;
+    const words = group.textContent;
+    if (/from edge/.test(words)) return "lever.pivot_mm[1]";
+    if (/over bench|pivot/.test(words)) return "lever.pivot_mm[2]";
+    return "lever.pivot_mm[0]";
+  }
+
+  document.addEventListener("pointerdown", (event) => {
+    const group = event.target.closest && event.target.closest("g.dimension.grip");
+    if (!group || event.button !== 0) return;
+    const path = dimensionPath(group);
+    const svg = group.ownerSVGElement;
+    const pull = measure(group, svg, path);
+    if (!pull) return;
+    event.preventDefault();
+    const at = onSheet(svg, event);
+    board.pulled = Object.assign(pull, { path: path, from: at, start: Number(board.known[path]), toSheet: svg.getScreenCTM().inverse() });
+    board.dragging = true;
+    board.draggedFrom = board.number;
+    document.documentElement.classList.add("pulling");
+  }, true);
+
+  document.addEventListener("pointermove", (event) => {
+    const p = board.pulled;
+    if (!p) return;
+    event.preventDefault();
+    const at = new DOMPoint(event.clientX, event.clientY).matrixTransform(p.toSheet);
+    const value = Math.round(p.start + p.change(p.from, at));
+    tag(event, label(p.path) + " " + value + (p.path.endsWith("_deg") ? "°" : "\u202fmm"));
+    if (value === board.known[p.path]) return;
+    setProps(idOf("value", p.path), { value: value });
+    if (partId("slider", p.path)) setProps(idOf("slider", p.path), { value: value });
+    board.set(p.path, value, "drag");
+  });
+
+  document.addEventListener("pointerup", () => {
+    if (!board.pulled) return;
+    board.pulled = null;
+    document.documentElement.classList.remove("pulling");
+    tag(null, "");
+  });
+
+  function onSheet(svg, event) {
+    return new DOMPoint(event.clientX, event.clientY).matrixTransform(svg.getScreenCTM().inverse());
+  }
+
+  /* How a movement on the sheet changes the value: along the dimension line, or round the pivot. */
+  function measure(group, svg, path) {
+    const value = Number(board.known[path]);
+    if (!Number.isFinite(value)) return null;
+    const lines = [...group.querySelectorAll("polyline")].map((line) => [...line.points].map((p) => [p.x, p.y]));
+    const arc = lines.find((line) => line.length > 20);
+    if (arc) return { change: turning(arc, value) };
+    const scale = board.drawn.mm_per_unit;
+    const shaft = lines.filter((line) => line.length === 2).pop();
+    if (!shaft) return null;
+    let way = [shaft[1][0] - shaft[0][0], shaft[1][1] - shaft[0][1]];
+    const length = Math.hypot(way[0], way[1]) || 1;
+    way = [way[0] / length, way[1] / length];
+    const sign = path.endsWith("[0]") && value < 0 ? -1 : 1;
+    return { change: (from, at) => sign * scale * ((at.x - from.x) * way[0] + (at.y - from.y) * way[1]) };
+  }
+
+  function turning(arc, value) {
+    const [a, b, c] = [arc[0], arc[Math.floor(arc.length / 2)], arc[arc.length - 1]];
+    const d = 2 * (a[0] * (b[1] - c[1]) + b[0] * (c[1] - a[1]) + c[0] * (a[1] - b[1]));
+    const q = (p) => p[0] * p[0] + p[1] * p[1];
+    const cx = (q(a) * (b[1] - c[1]) + q(b) * (c[1] - a[1]) + q(c) * (a[1] - b[1])) / d;
+    const cy = (q(a) * (c[0] - b[0]) + q(b) * (a[0] - c[0]) + q(c) * (b[0] - a[0])) / d;
+    const angle = (x, y) => Math.atan2(y - cy, x - cx);
+    const wrap = (t) => Math.atan2(Math.sin(t), Math.cos(t));
+    const sweep = wrap(angle(b[0], b[1]) - angle(a[0], a[1]));
+    const sign = Math.sign(sweep) * Math.sign(value || 1);
+    return (from, at) => sign * wrap(angle(at.x, at.y) - angle(from.x, from.y)) * 180 / Math.PI;
+  }
+
+  function label(path) {
+    return path.replace(/^.*\./, "").replace(/\[\d\]$/, "").replace(/_(mm|deg)$/, "").replace(/_/g, " ");
+  }
+
+  function tag(event, text) {
+    let box = byId("pull-tag");
+    if (!box) {
+      box = document.createElement("div");
+      box.id = "pull-tag";
+      document.body.appendChild(box);
+    }
+    box.textContent = text;
+    box.hidden = !text;
+    if (event) { box.style.left = event.clientX + 14 + "px"; box.style.top = event.clientY - 30 + "px"; }
+  }
+
+  /* ---- buttons and keys ---- */
+
+  document.addEventListener("click", (event) => {
+    const button = event.target.closest && event.target.closest("button");
+    if (!button || button.disabled) return;
+    if (button.id === "undo" || button.id === "redo") board.send({ do: button.id }, "rest");
+    else if (button.id === "conflict-take") { board.change = Infinity; board.send({ do: "take" }, "rest"); }
+    else if (button.id === "conflict-keep") board.send({ do: "keep", edits: board.refused }, "rest");
+    else if (button.dataset.view) show(button);
+    else if (button.id.startsWith("{")) {
+      const id = JSON.parse(button.id);
+      if (id.type === "add" || id.type === "remove") board.send({ do: id.type, path: id.path }, "rest");
+    }
+  });
+
+  function show(button) {
+    const sheet = byId("sheet");
+    sheet.className = "sheet show-" + button.dataset.view;
+    document.querySelectorAll("button.view").forEach((b) => b.setAttribute("aria-pressed", String(b === button)));
+    setProps("view", { data: button.dataset.view });
+  }
+
+  document.addEventListener("keydown", (event) => {
+    const typing = event.target.closest && event.target.closest("input, textarea, [contenteditable]");
+    if ((event.ctrlKey || event.metaKey) && !typing) {
+      const key = event.key.toLowerCase();
+      if (key === "z" || key === "y") {
+        event.preventDefault();
+        const button = byId(key === "y" || event.shiftKey ? "redo" : "undo");
+        if (button && !button.disabled) button.click();
+      }
+    }
+    if (event.target.id === "chart-picture" && board.drawn) {
+      const steps = { ArrowLeft: -1, ArrowRight: 1, ArrowDown: -1, ArrowUp: 1, PageDown: -5, PageUp: 5, Home: -1e6, End: 1e6 };
+      if (event.key in steps) {
+        event.preventDefault();
+        pointTo((board.position || 0) + steps[event.key]);
+      }
+    }
+  });
+
+  board.theme = function (clicks, now) {
+    if (!clicks) return [skip(), skip()];
+    const next = now === "dark" ? "light" : "dark";
+    document.cookie = "pullward_theme=" + next + "; path=/; max-age=31536000; SameSite=Strict";
+    return [next, next === "dark" ? "Light" : "Dark"];
+  };
+
+  board.variant = function (name) {
+    if (name && name !== board.seenVariant) {
+      if (board.seenVariant !== undefined) { stale(true); say("working it out"); }
+      board.seenVariant = name;
+    }
+    return skip();
+  };
+
+  window.dash_clientside = Object.assign({}, window.dash_clientside, {
+    board: {
+      changed: (...args) => board.changed(...args),
+      arrived: (state) => board.arrived(state),
+      drew: (drawn) => board.drew(drawn),
+      peopleDrew: (drawn) => board.peopleDrew(drawn),
+      theme: (clicks, now) => board.theme(clicks, now),
+      variant: (name) => board.variant(name),
+    },
+  });
+})();

@@ -1,0 +1,1 @@
+"""What each page does; a file of the same name in `layouts` says what it shows."""

@@ -1,0 +1,109 @@
+"""Pictures and ratings: asked for when the fields have changed, put in place when the engine has answered."""
+
+from typing import Any
+
+import numpy as np
+from dash import Dash, Input, Output, State, html, no_update
+from dash.exceptions import PreventUpdate
+
+from ergo.board import drawings
+from ergo.board.guard import work_key
+from ergo.board.ids import Id
+from ergo.board.judge import Superseded, question_key
+from ergo.board.layouts import ratings
+from ergo.board.room import Room
+from ergo.errors import PullwardError
+from ergo.evaluation.results import Results
+from ergo.pictures.sheet import quantity
+from ergo.study.model import Study
+
+AS_WRITTEN = "as written"
+
+
+def register(app: Dash, room: Room) -> None:
+    """Make the main page work."""
+
+    @app.callback(
+        Output(Id.DRAWN, "data"),
+        Output(Id.RATINGS, "children"),
+        Input(Id.ARRIVED, "data"),
+        Input(Id.VARIANT, "value"),
+        State(Id.TAB, "data"),
+    )
+    def draw(state: dict[str, Any] | None, variant: str | None, tab: str) -> tuple[Any, Any]:
+        work = room.store.work(work_key())
+        state = state or {}
+        with work.lock:
+            draft, change = work.draft, work.change
+        if draft is None or draft.good is None or state.get("conflict") or not (draft.sound or not state):
+            raise PreventUpdate
+        study = as_variant(draft.good, variant)
+        question = room.judge.ask(f"{work.key}:{tab}", study, dragging=state.get("phase") == "drag")
+        try:
+            results = question.wait()
+        except Superseded as error:
+            raise PreventUpdate from error
+        except (PullwardError, TimeoutError) as error:
+            return no_update, refusal(str(error))
+        return bundle(results, question.study, change, full=study.operators.count), ratings.strip(results)
+
+    @app.callback(Output(Id.PEOPLE_DRAWN, "data"), Input(Id.POINTER, "data"), prevent_initial_call=True)
+    def point(asked: dict[str, Any]) -> dict[str, Any]:
+        results = room.judge.answer_to(str(asked.get("key", "")))
+        if results is None:
+            raise PreventUpdate
+        position = int(np.clip(int(asked.get("position", 0)), 0, results.stroke.stroke.size - 1))
+        return {"key": asked["key"], "position": position, "svg": drawings.operators(results, position).svg}
+
+    for name, source in (("drew", Id.DRAWN), ("peopleDrew", Id.PEOPLE_DRAWN)):
+        app.clientside_callback(
+            f"function(drawn) {{ return dash_clientside.board.{name}(drawn); }}",
+            Output(Id.HEARD, "data", allow_duplicate=True),
+            Input(source, "data"),
+            prevent_initial_call=True,
+        )
+
+
+def as_variant(study: Study, name: str | None) -> Study:
+    """Return the study as one of its variants makes it, as written where there is none of that name."""
+    return study.variant(name) if name and name in {v.name for v in study.variants} else study
+
+
+def bundle(results: Results, study: Study, change: int, *, full: int) -> dict[str, Any]:
+    """Return the pictures and what the pointer needs to read them."""
+    chart, machine = drawings.stroke(results), drawings.machine(results)
+    position = int(results.stroke.stroke.size // 2)
+    count = study.operators.count
+    said = f"{count} operators" if count >= full else f"{count} of {full} operators"
+    return {
+        "change": change,
+        "key": question_key(study),
+        "machine": machine.svg,
+        "chart": chart.svg,
+        "operators": drawings.operators(results, position).svg,
+        "span": drawings.stroke_span(chart),
+        "strokes": [round(float(s), 6) for s in results.stroke.stroke],
+        "readout": [readout(results, p) for p in range(results.stroke.stroke.size)],
+        "position": position,
+        "mm_per_unit": drawings.mm_per_unit(machine),
+        "said": said,
+    }
+
+
+def readout(results: Results, position: int) -> str:
+    """Return one stroke position in words."""
+    s = results.stroke
+    weak = s.allowed_n.get("women_p05")
+    parts = [
+        f"At {100 * s.stroke[position]:.0f}\u202f% of the stroke",
+        f"{quantity(float(s.demand_n[position]), 'N')} needed",
+    ]
+    if weak is not None:
+        parts.append(f"women P5 may give {quantity(float(weak[position]), 'N')}")
+    parts.append(f"{100 * float(s.served_share[position]):.1f}\u202f% served here")
+    return ", ".join(parts) + "."
+
+
+def refusal(text: str) -> list[Any]:
+    """Return what the ratings say when the engine refuses the study."""
+    return [html.Div([html.Span(className="mark mark-short"), html.H2("No ratings")], className="verdict"), html.P(text)]

@@ -1,0 +1,85 @@
+"""The frame: which page is shown, opening a study, theme, engine's state."""
+
+from pathlib import Path
+from typing import Any
+
+from dash import ALL, Dash, Input, Output, State, ctx, html, no_update
+from dash.exceptions import PreventUpdate
+
+from ergo.board.callbacks.values import state_of
+from ergo.board.guard import work_key
+from ergo.board.ids import Id, Part
+from ergo.board.layouts import bench
+from ergo.board.opening import open_shipped, shipped
+from ergo.board.room import Room
+from ergo.board.store import Work
+
+
+def register(app: Dash, room: Room) -> None:
+    """Make the frame work."""
+
+    @app.callback(
+        Output(Id.PAGE, "children"),
+        Output(Id.ARRIVED, "data", allow_duplicate=True),
+        Input(Id.PLACE, "pathname"),
+        State(Id.TAB, "data"),
+        prevent_initial_call="initial_duplicate",
+    )
+    def page(path: str, tab: str) -> tuple[Any, Any]:
+        work = room.store.work(work_key())
+        return page_of(path, work), _state(work, tab)
+
+    @app.callback(
+        Output(Id.PAGE, "children", allow_duplicate=True),
+        Output(Id.ARRIVED, "data", allow_duplicate=True),
+        Input({"type": str(Part.SHIPPED), "path": ALL}, "n_clicks"),
+        State(Id.PLACE, "pathname"),
+        State(Id.TAB, "data"),
+        prevent_initial_call=True,
+    )
+    def opened(clicks: list[int], path: str, tab: str) -> tuple[Any, Any]:
+        if not any(clicks) or not isinstance(ctx.triggered_id, dict):
+            raise PreventUpdate
+        work = room.store.work(work_key())
+        open_shipped(work, str(ctx.triggered_id["path"]), tab)
+        return page_of(path, work), _state(work, tab)
+
+    @app.callback(
+        Output(Id.VARIANT, "data"), Output(Id.VARIANT, "value"),
+        Input(Id.ARRIVED, "data"), State(Id.VARIANT, "value"), State(Id.VARIANT, "data"),
+    )  # fmt: skip
+    def variants(state: Any, chosen: str, offered: list[str]) -> tuple[Any, Any]:
+        work = room.store.work(work_key())
+        good = work.draft.good if work.draft else None
+        names = ["as written", *[v.name for v in good.variants]] if good else ["as written"]
+        return (names if names != offered else no_update), (no_update if chosen in names else "as written")
+
+    @app.callback(
+        Output(Id.ENGINE_TICK, "disabled"), Output(Id.ENGINE_SAYS, "children"), Input(Id.ENGINE_TICK, "n_intervals")
+    )
+    def engine(_: int) -> tuple[bool, Any]:
+        if not room.judge.ready.is_set():
+            return False, "The engine is being compiled for this computer, once; the first answer takes longer."
+        return True, room.judge.trouble
+
+    app.clientside_callback(
+        "function(clicks, now) { return dash_clientside.board.theme(clicks, now); }",
+        Output(Id.THEME, "forceColorScheme"), Output(Id.THEME_SWITCH, "children"),
+        Input(Id.THEME_SWITCH, "n_clicks"), State(Id.THEME, "forceColorScheme"),
+    )  # fmt: skip
+    app.clientside_callback(
+        "function(name) { return dash_clientside.board.variant(name); }",
+        Output(Id.HEARD, "data", allow_duplicate=True), Input(Id.VARIANT, "value"), prevent_initial_call=True,
+    )  # fmt: skip
+
+
+def page_of(path: str, work: Work) -> Any:
+    """Return the page at a path, as the work stands."""
+    if work.draft is None:
+        return bench.empty(shipped())
+    return bench.page(work.draft)
+
+
+def _state(work: Work, tab: str) -> dict[str, Any]:
+    work.seen_by[tab] = work.change
+    return state_of(work, work.numbers.get(tab, 0), "rest")

@@ -1,0 +1,151 @@
+"""The one worker that asks the engine: the newest question of each browser first, older ones dropped."""
+
+import inspect
+import threading
+import time
+from collections import OrderedDict
+from collections.abc import Callable
+from typing import Any
+
+from ergo.errors import PullwardError
+from ergo.evaluation.results import Results
+from ergo.study.model import Study
+
+DRAGGED_COUNT = 500
+RESULTS_KEPT = 48
+# The kernels of the engine must not run in two threads at once; whoever calls the engine holds this.
+ENGINE = threading.Lock()
+
+
+class Superseded(Exception):
+    """The question was dropped, since a newer one came from the same browser."""
+
+
+class Question:
+    """One study to be judged; `wait` gives the answer."""
+
+    def __init__(self, owner: str, study: Study) -> None:
+        self.owner, self.study, self.key = owner, study, question_key(study)
+        self.dropped = False
+        self.share, self.what = 0.0, ""
+        self._done = threading.Event()
+        self._answer: Results | BaseException | None = None
+
+    def wait(self, timeout_s: float = 120.0) -> Results:
+        """Return the results; raises `Superseded`, `TimeoutError`, or what the engine refused with."""
+        if not self._done.wait(timeout_s):
+            msg = "the engine has not answered in time"
+            raise TimeoutError(msg)
+        if isinstance(self._answer, BaseException):
+            raise self._answer
+        assert self._answer is not None
+        return self._answer
+
+    def answer(self, answer: "Results | BaseException") -> None:
+        """Give the answer to whoever waits."""
+        self._answer = answer
+        self._done.set()
+
+    def drop(self) -> None:
+        """Take the question back."""
+        self.dropped = True
+
+
+class Judge:
+    """Holds the engine, a short queue and the last answers."""
+
+    def __init__(self, evaluate: Callable[..., Results]) -> None:
+        self._evaluate = evaluate
+        self._tells = "tell" in inspect.signature(evaluate).parameters
+        self._queue: OrderedDict[str, Question] = OrderedDict()
+        self._running: Question | None = None
+        self._answers: OrderedDict[str, Results] = OrderedDict()
+        self._changed = threading.Condition()
+        self.ready = threading.Event()
+        self.trouble = ""
+        self.took_s: dict[int, float] = {}
+
+    def start(self, first: Study | None = None) -> None:
+        """Start the worker; it compiles the kernels with `first` before it answers."""
+        threading.Thread(target=self._work, args=(first,), daemon=True, name="judge").start()
+
+    def known(self, study: Study) -> Results | None:
+        """Return the answer to a study that was judged before."""
+        with self._changed:
+            return self._answers.get(question_key(study))
+
+    def answer_to(self, key: str) -> Results | None:
+        """Return an answer by the key of its question, while it is kept."""
+        with self._changed:
+            return self._answers.get(key)
+
+    def ask(self, owner: str, study: Study, *, dragging: bool = False) -> Question:
+        """Ask about a study; an older question of the same owner is dropped, even while it is worked on."""
+        if dragging and study.operators.count > DRAGGED_COUNT:
+            study = fewer_operators(study, DRAGGED_COUNT)
+        question = Question(owner, study)
+        with self._changed:
+            for old in (self._queue.pop(owner, None), self._running):
+                if old is not None and old.owner == owner:
+                    old.drop()
+                    if old is not self._running:
+                        old.answer(Superseded())
+            known = self._answers.get(question.key)
+            if known is not None:
+                self._answers.move_to_end(question.key)
+                question.answer(known)
+                return question
+            self._queue[owner] = question
+            self._changed.notify_all()
+        return question
+
+    def _work(self, first: Study | None) -> None:
+        if first is not None:
+            try:
+                with ENGINE:
+                    self._evaluate(fewer_operators(first, 50))
+            except Exception as error:
+                self.trouble = f"the engine does not start: {error}"
+        self.ready.set()
+        while True:
+            with self._changed:
+                while not self._queue:
+                    self._changed.wait()
+                _, self._running = self._queue.popitem(last=False)
+                question = self._running
+            self._answer(question)
+
+    def _answer(self, question: Question) -> None:
+        def tell(share: float, what: str) -> None:
+            question.share, question.what = share, what
+            if question.dropped:
+                raise Superseded
+
+        started = time.perf_counter()
+        answer: Results | BaseException
+        try:
+            with ENGINE:
+                extra: dict[str, Any] = {"tell": tell} if self._tells else {}
+                answer = self._evaluate(question.study, **extra)
+        except (PullwardError, Superseded) as error:
+            answer = error
+        except Exception as error:
+            answer = PullwardError(f"the engine failed on this study: {type(error).__name__}: {error}")
+        with self._changed:
+            self._running = None
+            if isinstance(answer, Results):
+                self.took_s[question.study.operators.count] = time.perf_counter() - started
+                self._answers[question.key] = answer
+                while len(self._answers) > RESULTS_KEPT:
+                    self._answers.popitem(last=False)
+        question.answer(Superseded() if question.dropped else answer)
+
+
+def fewer_operators(study: Study, count: int) -> Study:
+    """Return the study with fewer operators drawn."""
+    return study.model_copy(update={"operators": study.operators.model_copy(update={"count": count})})
+
+
+def question_key(study: Study) -> str:
+    """Return what makes two questions the same: content, CSV rows and variant."""
+    return f"{study.digest()}:{study.variant_name}"

@@ -1,0 +1,1 @@
+"""What each page shows; a file of the same name in `callbacks` makes it work."""
