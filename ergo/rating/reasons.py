@@ -9,7 +9,7 @@ LIMIT_WORDS = {
     "raising or lowering the upper arm": "the shoulder, raising or lowering the upper arm",
     "moving the upper arm across": "the shoulder, moving the upper arm across",
     "turning the upper arm": "the shoulder, turning the upper arm",
-    "tipping": "tipping over the feet",
+    "tipping": "losing balance (tipping)",
     "slipping": "slipping on the floor",
     "reach": "reach: the handle is too far",
     "handle too close": "the handle being too close",

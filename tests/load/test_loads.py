@@ -48,6 +48,5 @@ def test_beyond_its_let_go_a_load_is_gone_and_its_table_is_not_asked():
     np.testing.assert_allclose(load.force_n(SLIDE), [100.0, 350.0, 0.0])
     np.testing.assert_array_equal(load.force_n(np.array([0.0051, 0.0059])), 0.0)
     assert load.reach_problems(SLIDE) == ()
-    assert load.kind == "table"
     assert LetsGo(ConstantLoad(5.0), -0.001).problems()[0].where == "load.lets_go_at"
     np.testing.assert_array_equal(LetsGo(ConstantLoad(5.0), -0.001).force_n(SLIDE), 0.0)
