@@ -21,6 +21,7 @@ NAMES = (
     "arm_mass_factor",
     "watched_s",
 )
+SHOULDER = "body_behind_shoulder_share"
 NOT_COVERED, NOTHING, END_OF_TRAVEL, ZONE, OWN_BODY = range(-1, 4)
 MET_WORDS = {
     NOT_COVERED: "not covered: no posture or no moving mass here",
@@ -34,7 +35,16 @@ HEADINGS = (("to the right", "to the left"), ("toward the machine", "away from t
 
 def parameter_names() -> tuple[tuple[str, str], ...]:
     """Return the (table, row) of every number that the hand's overrun rests on."""
-    return tuple((TABLE, name) for name in NAMES)
+    return tuple((TABLE, name) for name in (*NAMES, SHOULDER))
+
+
+def shoulder_mass_kg(mass_kg: ArrayLike, library: Library) -> Array:
+    """Return the mass (n,) [kg] with which the shoulder gives way, from body mass (n,) [kg].
+
+    Source: table `letgo_hand`.
+    """
+    share = rows(library, TABLE, [SHOULDER], "the mass behind the shoulder").values()[SHOULDER]
+    return share * np.asarray(mass_kg, dtype=float)
 
 
 @dataclass(frozen=True)
@@ -65,9 +75,7 @@ class Muscle:
     @classmethod
     def from_library(cls, library: Library, scenarios: int = SCENARIOS, seed: int = SEED) -> "Muscle":
         """Return the muscles of table `letgo_hand`; a DataError if a row is missing."""
-        spread = rows(library, TABLE, NAMES, "how far the hand runs on after let-go").scenarios(
-            scenarios, seed
-        )
+        spread = rows(library, TABLE, NAMES, "how far the hand runs on after let-go").scenarios(scenarios, seed)
         return cls(
             latency_s=spread["reflex_latency_s"],
             relaxation_s=spread["relaxation_s"],
@@ -208,6 +216,8 @@ def run_on(
     force, arm, fixed, against, rate, *ways = (np.ascontiguousarray(v) for v in cells)
     with np.errstate(invalid="ignore"):
         covered = np.isfinite(force) & (arm + fixed > 0.0) & np.isfinite(against) & np.isfinite(rate)
+    # A mass without end, a straight arm whose shoulder is held, is driven nowhere.
+    against = np.where(np.isinf(arm + fixed), force, against)
     ahead = np.stack([np.where(np.isnan(way), np.inf, way) for way in ways])
     first = np.argmin(ahead, axis=0)
     answers = _answers(force, against, rate, arm, fixed, ahead.min(axis=0), covered, muscle)
@@ -216,14 +226,13 @@ def run_on(
     met = np.where(how == k.MET, (first + END_OF_TRAVEL)[..., None], NOTHING)
     speed = answers[..., k.SPEED]
     at_contact = np.where(how == k.STILL_MOVING, 0.0, speed)
-    energy = np.where(at_contact > 0.0, 0.5 * mass * at_contact**2, np.where(covered[..., None], 0.0, np.nan))
     return HandRun(
         overrun_m=answers[..., k.OVERRUN],
         peak_speed_m_s=answers[..., k.PEAK_SPEED],
         time_s=answers[..., k.TIME],
         met=np.where(covered[..., None], met, NOT_COVERED).astype(np.int8),
         speed_m_s=at_contact,
-        energy_j=energy,
+        energy_j=0.5 * np.where(at_contact == 0.0, 0.0, mass) * at_contact**2,
         press_n=answers[..., k.PRESS],
         moving_mass_kg=mass,
         moving_on=how == k.STILL_MOVING,

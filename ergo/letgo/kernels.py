@@ -71,17 +71,33 @@ def crossing(terms, level, until):
 
 
 @bare
-def one_case(
-    force, against, against_rate, mass, damping, stiffness, latency, decay, watched, ahead, work, answer
-):
+def end_of_step(place, speed, step, ahead):
+    """Time within a step, travel there and how it ends: at a turn, at what is ahead, or still moving."""
+    last, how = step, STILL_MOVING
+    if at(speed, step) <= 0.0:
+        last, how = crossing(speed, 0.0, step), TURNED
+    reached = at(place, last)
+    if reached >= ahead:
+        return crossing(place, ahead, last), ahead, MET
+    return last, reached, how
+
+
+@bare
+def quickest(speed, push, last):
+    """Greatest speed from a step's start until `last`: at its end, or where the push turns to a brake."""
+    if push[0] > 0.0 and at(push, last) < 0.0:
+        return at(speed, crossing(push, 0.0, last))
+    return at(speed, last)
+
+
+@bare
+def one_case(force, against, against_rate, mass, damping, stiffness, latency, decay, watched, ahead, work, answer):
     """Follow one hand from let-go until it turns, meets what is `ahead`, or is no longer watched."""
     place, speed, push = work[0], work[1], work[2]
     answer[:] = 0.0
-    if ahead <= 0.0:
-        answer[HOW], answer[PRESS] = MET, max(force - against, 0.0)
-        return
-    if force - against <= 0.0:
-        answer[HOW] = TURNED
+    if ahead <= 0.0 or force - against <= 0.0:
+        answer[HOW] = MET if ahead <= 0.0 else TURNED
+        answer[PRESS] = max(force - against, 0.0)
         return
     spring = stiffness + against_rate
     x = v = now = 0.0
@@ -91,33 +107,18 @@ def one_case(
         steps = int(np.ceil(max((end - now) * rate, 1.0)))
         step = (end - now) / steps
         drive = force
-        if step <= 0.0:
-            continue
-        shrink = np.exp(-fade * step)
         for _ in range(steps):
             series(x, v, drive, against, mass, damping, spring, fade, place, speed, push)
-            last = step
-            if at(speed, step) <= 0.0:
-                last = crossing(speed, 0.0, step)
-            reached = at(place, last)
-            met = reached >= ahead
-            if met:
-                last = crossing(place, ahead, last)
-                reached = ahead
-            quickest = at(speed, last)
-            if push[0] > 0.0 and at(push, last) < 0.0:
-                quickest = at(speed, crossing(push, 0.0, last))
-            answer[PEAK_SPEED] = max(answer[PEAK_SPEED], quickest)
-            if met or last < step:
-                answer[OVERRUN], answer[TIME] = reached, now + last
-                answer[HOW] = MET if met else TURNED
-                answer[SPEED] = max(at(speed, last), 0.0) if met else 0.0
-                held = drive * np.exp(-fade * last) - against - spring * reached
-                answer[PRESS] = max(held, 0.0) if met else 0.0
+            last, x, how = end_of_step(place, speed, step, ahead)
+            answer[PEAK_SPEED] = max(answer[PEAK_SPEED], quickest(speed, push, last))
+            drive *= np.exp(-fade * last)
+            v = at(speed, last)
+            now += last
+            if how != STILL_MOVING:
+                answer[OVERRUN], answer[TIME], answer[HOW] = x, now, how
+                if how == MET:
+                    answer[SPEED], answer[PRESS] = max(v, 0.0), max(drive - against - spring * x, 0.0)
                 return
-            x, v = reached, at(speed, step)
-            now += step
-            drive *= shrink
         now = end
     answer[OVERRUN], answer[TIME], answer[SPEED], answer[HOW] = x, watched, v, STILL_MOVING
 

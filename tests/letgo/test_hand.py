@@ -120,6 +120,13 @@ def test_operators_without_a_posture_are_not_covered_and_do_not_count():
     assert "not covered" in hand.MET_WORDS[hand.NOT_COVERED]
 
 
+def test_a_straight_arm_whose_shoulder_is_held_goes_nowhere():
+    run = run_on([80.0], np.inf * ONE, SHIPPED, fixed_mass_kg=0.5, zone_m=0.01)
+    assert (run.met == hand.NOTHING).all()
+    for values in (run.overrun_m, run.peak_speed_m_s, run.time_s, run.energy_j):
+        assert (values == 0.0).all()
+
+
 def test_the_band_is_over_chosen_operators_and_scenarios():
     rng = np.random.default_rng(2)
     run = run_on(rng.uniform(40, 200, (30, 3)), rng.uniform(1, 4, (30, 3)), SHIPPED)
@@ -163,7 +170,8 @@ def test_every_named_row_is_there_and_moves_the_result():
         assert table == hand.TABLE
         changed = Muscle.from_library(LIB.with_value(table, name, rows[name].low))
         run = run_on([100.0], 2.0 * ONE, changed)
-        if name != "watched_s":  # at this force the hand has turned long before it is no longer watched
+        # at this force the hand has turned long before it is no longer watched; the shoulder acts on arm masses
+        if name not in ("watched_s", hand.SHOULDER):
             assert not np.allclose(run.overrun_m, shipped.overrun_m)
 
 
@@ -171,9 +179,7 @@ class Without(Library):
     """A library in which some rows are missing."""
 
     def parameters(self, key):
-        return {
-            n: r for n, r in super().parameters(key).items() if "latency" not in n and n != "relaxation_s"
-        }
+        return {n: r for n, r in super().parameters(key).items() if "latency" not in n and n != "relaxation_s"}
 
 
 def test_missing_latencies_are_one_sentence():
@@ -187,6 +193,10 @@ def test_missing_latencies_are_one_sentence():
 def test_a_cell_without_a_number_is_missing_too():
     with pytest.raises(DataError, match="no value or range for relaxation_s, so"):
         Muscle.from_library(LIB.with_value(hand.TABLE, "relaxation_s", float("nan")))
+
+
+def test_the_shoulder_gives_way_with_half_the_body():
+    assert hand.shoulder_mass_kg([60.0, 90.0], LIB) == pytest.approx([30.0, 45.0])
 
 
 def test_headings_and_what_is_left():

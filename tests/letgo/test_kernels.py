@@ -38,7 +38,7 @@ def twin(force, against, against_rate, mass, damping, stiffness, latency, decay,
         x, v, f, r = state(t)
         return f - r - spring * x - damping * v
 
-    times = np.linspace(0.0, watched, 2001)
+    times = np.linspace(0.0, watched, 501)
     states = np.array([state(t) for t in times])
     end, how = watched, k.STILL_MOVING
     turned = np.nonzero(states[1:, 1] <= 0.0)[0]
@@ -88,7 +88,7 @@ def cases(count, seed):
         )
 
 
-@pytest.mark.parametrize("case", list(cases(60, 11)))
+@pytest.mark.parametrize("case", list(cases(40, 11)))
 def test_random_cases(case):
     # both are exact up to rounding; events found by bracketing carry about 1e-13 s
     found, expected = kernel(*case), twin(*case)
@@ -125,9 +125,7 @@ def test_all_cases_is_one_case_each_with_stiffness_from_force():
     rng = np.random.default_rng(4)
     force, arm = rng.uniform(20, 200, (3, 2)), rng.uniform(1, 4, (3, 2))
     zero, fixed, ahead = np.zeros((3, 2)), np.full((3, 2), 0.4), np.full((3, 2), np.inf)
-    muscle = np.array(
-        [[0.05, 0.07], [15.0, 20.0], [9.0, 4.0], [0.05, 0.04], [50.0, 0.0], [1.0, 1.2], [0.5, 0.4]]
-    )
+    muscle = np.array([[0.05, 0.07], [15.0, 20.0], [9.0, 4.0], [0.05, 0.04], [50.0, 0.0], [1.0, 1.2], [0.5, 0.4]])
     answers = np.empty((3, 2, 2, k.ANSWERS))
     k.all_cases(force, zero, zero, arm, fixed, ahead, muscle, answers)
     for i, j, s in np.ndindex(3, 2, 2):

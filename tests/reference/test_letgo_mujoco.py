@@ -167,9 +167,7 @@ def test_overrun_peak_speed_time_and_energy_at_100_n(name):
 @pytest.mark.parametrize("name", list(postures()))
 def test_a_run_of_few_millimetres_agrees_to_a_hundredth(name):
     # so short a run leaves the posture alone: what differs is the engine's step of 0.1 ms and its soft tie
-    stiff = dataclasses.replace(
-        SHIPPED, relaxed_n_per_m=np.array([20000.0]), damping_time_s=np.array([0.002])
-    )
+    stiff = dataclasses.replace(SHIPPED, relaxed_n_per_m=np.array([20000.0]), damping_time_s=np.array([0.002]))
     found = engine_run(*postures()[name], 100.0, stiff)
     expected = ours(name, 100.0, stiff)
     assert expected[0] < 0.012
