@@ -198,7 +198,7 @@
     if (!drawn) return skip();
     place("bench-picture", drawn.machine);
     place("chart-picture", drawn.chart);
-    if (drawn.operators) place("people-picture", drawn.operators);
+    putPeople(drawn);
     board.drawn = drawn;
     board.people = {};
     if (board.position === null || board.position >= drawn.readout.length) board.position = drawn.position;
@@ -209,7 +209,8 @@
     if (board.held) { flush(); return skip(); }
     if (!board.unheard.length && drawn.change >= board.change) {
       stale(false);
-      say(drawn.said);
+      say(drawn.more ? drawn.said + ", the rest is coming" : drawn.said);
+      if (drawn.more && !board.dragging) setProps("edit", { data: { edits: [], phase: "full", seen: board.change } });
     }
     return skip();
   };
@@ -217,6 +218,11 @@
   function place(id, svg) {
     const box = byId(id);
     if (box && svg !== undefined && svg !== null) box.innerHTML = svg;
+  }
+
+  function putPeople(drawn) {
+    place("people-picture", drawn.operators);
+    place("corner-picture", drawn.corner);
   }
 
   /* ---- the pointer over the stroke ---- */
@@ -269,14 +275,14 @@
   function askPeople() {
     const sheet = byId("sheet");
     if (!sheet || !board.drawn) return;
-    if (board.people[board.position]) { place("people-picture", board.people[board.position]); return; }
+    if (board.people[board.position]) { putPeople(board.people[board.position]); return; }
     setProps("pointer", { data: { position: board.position, key: board.drawn.key } });
   }
 
   board.peopleDrew = function (drawn) {
     if (!drawn || !board.drawn || drawn.key !== board.drawn.key) return skip();
-    board.people[drawn.position] = drawn.svg;
-    if (drawn.position === board.position) place("people-picture", drawn.svg);
+    board.people[drawn.position] = { operators: drawn.svg, corner: drawn.corner };
+    if (drawn.position === board.position) putPeople(board.people[drawn.position]);
     return skip();
   };
 
@@ -306,13 +312,7 @@
   }
 
   function dimensionPath(group) {
-    const key = group.dataset.key;
-    if (!key) return "";
-    if (key !== "lever.pivot_mm") return key;
-    const words = group.textContent;
-    if (/from edge/.test(words)) return "lever.pivot_mm[1]";
-    if (/over bench|pivot/.test(words)) return "lever.pivot_mm[2]";
-    return "lever.pivot_mm[0]";
+    return group.dataset.key || "";
   }
 
   document.addEventListener("pointerdown", (event) => {
@@ -448,6 +448,77 @@
     return [next, next === "dark" ? "Light" : "Dark"];
   };
 
+  /* Drawings inside pages arrive as text on their element. */
+  new MutationObserver(() => {
+    document.querySelectorAll("[data-svg]").forEach((box) => {
+      box.innerHTML = box.getAttribute("data-svg");
+      box.removeAttribute("data-svg");
+    });
+    follow();
+  }).observe(document.documentElement, { childList: true, subtree: true, attributes: true, attributeFilter: ["data-svg"] });
+
+  /* The link of the page that is shown, and a chart that the keyboard can walk along. */
+  function follow() {
+    document.querySelectorAll("a.page-link").forEach((link) => {
+      const here = link.pathname === location.pathname;
+      if (here !== (link.getAttribute("aria-current") === "page")) {
+        if (here) link.setAttribute("aria-current", "page"); else link.removeAttribute("aria-current");
+      }
+    });
+    const chart = byId("chart-picture");
+    if (chart && !chart.hasAttribute("tabindex")) {
+      for (const [name, value] of [["tabindex", "0"], ["role", "slider"], ["aria-label", "Stroke position"],
+        ["aria-valuemin", "0"], ["aria-valuemax", "100"], ["aria-valuenow", "50"]]) chart.setAttribute(name, value);
+    }
+  }
+
+  /* An SVG drawing as a PNG, three times its size, with the board's own font. */
+  board.raster = function (sent) {
+    if (!sent) return skip();
+    fontText().then((font) => {
+      const svg = sent.svg.replace(/(<svg[^>]*>)/, "$1<style>" + font + "</style>");
+      const image = new Image();
+      const address = URL.createObjectURL(new Blob([svg], { type: "image/svg+xml" }));
+      image.onload = () => {
+        const canvas = document.createElement("canvas");
+        canvas.width = 3 * image.width;
+        canvas.height = 3 * image.height;
+        canvas.getContext("2d").drawImage(image, 0, 0, canvas.width, canvas.height);
+        URL.revokeObjectURL(address);
+        canvas.toBlob((blob) => {
+          const link = document.createElement("a");
+          link.href = URL.createObjectURL(blob);
+          link.download = sent.name;
+          link.click();
+          setTimeout(() => URL.revokeObjectURL(link.href), 5000);
+        });
+      };
+      image.src = address;
+    });
+    return skip();
+  };
+
+  let font = null;
+  async function fontText() {
+    if (font !== null) return font;
+    const parts = [["Regular", 400], ["SemiBold", 600]].map(async ([name, weight]) => {
+      const bytes = new Uint8Array(await (await fetch("/assets/fonts/PullwardSans-" + name + ".woff2")).arrayBuffer());
+      let text = "";
+      for (let n = 0; n < bytes.length; n += 8192) text += String.fromCharCode.apply(null, bytes.subarray(n, n + 8192));
+      return "@font-face{font-family:'Pullward Sans';font-weight:" + weight + ";src:url(data:font/woff2;base64," + btoa(text) + ")}";
+    });
+    font = (await Promise.all(parts)).join("");
+    return font;
+  }
+
+  /* Files that are too large never leave the browser; the page says so. */
+  document.addEventListener("change", (event) => {
+    if (event.target.type !== "file") return;
+    const large = [...event.target.files].filter((file) => file.size > 1000000);
+    const says = byId("upload-says");
+    if (says && large.length) says.textContent = "Nothing was opened: " + large.map((f) => f.name).join(", ") + " is over 1 MB.";
+  }, true);
+
   board.variant = function (name) {
     if (name && name !== board.seenVariant) {
       if (board.seenVariant !== undefined) { stale(true); say("working it out"); }
@@ -463,6 +534,7 @@
       drew: (drawn) => board.drew(drawn),
       peopleDrew: (drawn) => board.peopleDrew(drawn),
       theme: (clicks, now) => board.theme(clicks, now),
+      raster: (sent) => board.raster(sent),
       variant: (name) => board.variant(name),
     },
   });

@@ -2,8 +2,9 @@
 
 import dataclasses
 
+from ergo.board.bench_sheet import BenchSheet, bench_sheet, operators_corner
 from ergo.evaluation.results import Results
-from ergo.pictures import bench_view, left_out_view, stroke_view, theme
+from ergo.pictures import bench_view, left_out_view, ratings_view, stroke_view, theme
 from ergo.pictures.sheet import Drawing
 from ergo.pictures.theme import Ink
 
@@ -18,9 +19,19 @@ PAGE = page_ink()
 THEMES = {"light": theme.LIGHT, "dark": theme.DARK, "print": theme.PRINT}
 
 
-def machine(results: Results, ink: Ink = PAGE, *, width: float = 640.0, height: float = 560.0) -> Drawing:
-    """Return the dimensioned views of bench, lever, linkage and handle path."""
-    return bench_view.machine_drawing(results, ink, width=width, height=height)
+def bench(results: Results) -> BenchSheet:
+    """Return the bench drawing for the page."""
+    return bench_sheet(results, PAGE)
+
+
+def corner(results: Results, position: int) -> str:
+    """Return the operators for the corner of the bench drawing."""
+    return operators_corner(results, position, PAGE)
+
+
+def machine(results: Results, ink: Ink = PAGE) -> Drawing:
+    """Return the dimensioned views on a sheet of their own, to take away."""
+    return bench_view.machine_drawing(results, ink)
 
 
 def operators(results: Results, position: int | None, ink: Ink = PAGE) -> Drawing:
@@ -31,12 +42,6 @@ def operators(results: Results, position: int | None, ink: Ink = PAGE) -> Drawin
 def stroke(results: Results, ink: Ink = PAGE, *, width: float = 640.0, height: float = 240.0) -> Drawing:
     """Return the stroke chart: needed and allowed force."""
     return stroke_view.stroke_drawing(results, ink, width=width, height=height)
-
-
-def mm_per_unit(machine_drawing: Drawing) -> float:
-    """Return the millimetres of the machine in a unit of its drawing, from the scale in its title."""
-    scale = machine_drawing.title.partition("1 : ")[2].split()[0]
-    return float(scale) / theme.UNITS_PER_PAPER_MM
 
 
 def stroke_span(drawing: Drawing) -> tuple[float, float]:
@@ -52,6 +57,20 @@ def left_out(results: Results, ink: Ink = PAGE) -> Drawing:
 def left_out_strip(results: Results, ink: Ink = PAGE) -> Drawing:
     """Return the share lost along the stroke, stacked by limit."""
     return left_out_view.strip_drawing(results, ink)
+
+
+def named(name: str, results: Results) -> Drawing:
+    """Return a drawing to take away by its name, in print inks; KeyError for a name that is not one."""
+    made = {
+        "machine": bench_view.machine_drawing,
+        "stroke": stroke_view.stroke_drawing,
+        "left_out": left_out_view.people_drawing,
+        "left_out_strip": left_out_view.strip_drawing,
+        "ratings": ratings_view.ratings_drawing,
+    }
+    if name == "operators":
+        return bench_view.operators_drawing(results, ink=theme.PRINT)
+    return made[name](results, theme.PRINT)
 
 
 def theme_css() -> str:

@@ -11,7 +11,9 @@ from ergo.errors import PullwardError
 from ergo.evaluation.results import Results
 from ergo.study.model import Study
 
-DRAGGED_COUNT = 500
+DRAGGED_COUNT, FEWEST = 500, 50
+# While the hand moves, a picture should follow within this; beyond `PATIENCE_S` a first picture comes of fewer people.
+FOLLOW_S, PATIENCE_S = 0.4, 1.2
 RESULTS_KEPT = 48
 # The kernels of the engine must not run in two threads at once; whoever calls the engine holds this.
 ENGINE = threading.Lock()
@@ -63,7 +65,7 @@ class Judge:
         self._changed = threading.Condition()
         self.ready = threading.Event()
         self.trouble = ""
-        self.took_s: dict[int, float] = {}
+        self._cost_s = 0.0
 
     def start(self, first: Study | None = None) -> None:
         """Start the worker; it compiles the kernels with `first` before it answers."""
@@ -79,10 +81,19 @@ class Judge:
         with self._changed:
             return self._answers.get(key)
 
-    def ask(self, owner: str, study: Study, *, dragging: bool = False) -> Question:
+    def takes_long(self, study: Study) -> bool:
+        """Return whether the answer is not known yet and will let the hand wait."""
+        return self._cost_s * _size(study) > PATIENCE_S and self.known(study) is None
+
+    def quick_count(self, study: Study) -> int:
+        """Return how many operators can be judged while the hand moves, by what the last answer took."""
+        can = FOLLOW_S / self._cost_s / study.study.positions if self._cost_s > 0.0 else DRAGGED_COUNT
+        return min(study.operators.count, max(FEWEST, min(DRAGGED_COUNT, int(can))))
+
+    def ask(self, owner: str, study: Study, *, quick: bool = False) -> Question:
         """Ask about a study; an older question of the same owner is dropped, even while it is worked on."""
-        if dragging and study.operators.count > DRAGGED_COUNT:
-            study = fewer_operators(study, DRAGGED_COUNT)
+        if quick and self.known(study) is None:
+            study = fewer_operators(study, self.quick_count(study))
         question = Question(owner, study)
         with self._changed:
             for old in (self._queue.pop(owner, None), self._running):
@@ -134,11 +145,16 @@ class Judge:
         with self._changed:
             self._running = None
             if isinstance(answer, Results):
-                self.took_s[question.study.operators.count] = time.perf_counter() - started
+                self._cost_s = (time.perf_counter() - started) / _size(question.study)
                 self._answers[question.key] = answer
                 while len(self._answers) > RESULTS_KEPT:
                     self._answers.popitem(last=False)
         question.answer(Superseded() if question.dropped else answer)
+
+
+def _size(study: Study) -> int:
+    """Return what the engine's time goes with: operators times stroke positions."""
+    return study.operators.count * study.study.positions
 
 
 def fewer_operators(study: Study, count: int) -> Study:

@@ -6,9 +6,11 @@ import dash_mantine_components as dmc
 from dash import dcc, html
 
 from ergo.board.ids import Id
+from ergo.board.layouts.figures import export
 from ergo.board.store import new_key
 
 PAGES = {
+    "/open": "Open",
     "/": "Bench",
     "/left-out": "Who is left out",
     "/let-go": "Let-go",
@@ -33,6 +35,7 @@ def frame(*, engine_ready: bool, theme: str) -> dmc.MantineProvider:
             dcc.Store(id=Id.EDIT),
             dcc.Store(id=Id.ARRIVED),
             dcc.Store(id=Id.HEARD),
+            dcc.Store(id=Id.RASTER),
             dcc.Download(id=Id.DOWNLOAD),
             dcc.Interval(id=Id.ENGINE_TICK, interval=700, disabled=engine_ready),
             html.A("Skip to the page", href="#page", className="skip"),
@@ -82,8 +85,7 @@ def _tools(theme: str) -> html.Div:
         [
             tool("Undo", Id.UNDO, "Ctrl+Z"),
             tool("Redo", Id.REDO, "Ctrl+Y"),
-            tool("Open", Id.OPEN),
-            tool("Save", Id.SAVE),
+            export("Download study", "toml:study"),
             tool("Light" if theme == "dark" else "Dark", Id.THEME_SWITCH),
         ],
         className="tools", role="group", **{"aria-label": "Tools"},

@@ -7,6 +7,7 @@ from dash import Dash, Input, Output, State, html, no_update
 from dash.exceptions import PreventUpdate
 
 from ergo.board import drawings
+from ergo.board.callbacks.answers import as_variant
 from ergo.board.guard import work_key
 from ergo.board.ids import Id
 from ergo.board.judge import Superseded, question_key
@@ -16,8 +17,6 @@ from ergo.errors import PullwardError
 from ergo.evaluation.results import Results
 from ergo.pictures.sheet import quantity
 from ergo.study.model import Study
-
-AS_WRITTEN = "as written"
 
 
 def register(app: Dash, room: Room) -> None:
@@ -38,14 +37,17 @@ def register(app: Dash, room: Room) -> None:
         if draft is None or draft.good is None or state.get("conflict") or not (draft.sound or not state):
             raise PreventUpdate
         study = as_variant(draft.good, variant)
-        question = room.judge.ask(f"{work.key}:{tab}", study, dragging=state.get("phase") == "drag")
+        phase = state.get("phase")
+        more = phase != "drag" and phase != "full" and room.judge.takes_long(study)
+        question = room.judge.ask(f"{work.key}:{tab}", study, quick=more or phase == "drag")
         try:
             results = question.wait()
         except Superseded as error:
             raise PreventUpdate from error
         except (PullwardError, TimeoutError) as error:
             return no_update, refusal(str(error))
-        return bundle(results, question.study, change, full=study.operators.count), ratings.strip(results)
+        drawn = bundle(results, question.study, change, full=study.operators.count)
+        return {**drawn, "more": more}, ratings.strip(results)
 
     @app.callback(Output(Id.PEOPLE_DRAWN, "data"), Input(Id.POINTER, "data"), prevent_initial_call=True)
     def point(asked: dict[str, Any]) -> dict[str, Any]:
@@ -53,7 +55,8 @@ def register(app: Dash, room: Room) -> None:
         if results is None:
             raise PreventUpdate
         position = int(np.clip(int(asked.get("position", 0)), 0, results.stroke.stroke.size - 1))
-        return {"key": asked["key"], "position": position, "svg": drawings.operators(results, position).svg}
+        return {"key": asked["key"], "position": position, "svg": drawings.operators(results, position).svg,
+                "corner": drawings.corner(results, position)}  # fmt: skip
 
     for name, source in (("drew", Id.DRAWN), ("peopleDrew", Id.PEOPLE_DRAWN)):
         app.clientside_callback(
@@ -64,14 +67,9 @@ def register(app: Dash, room: Room) -> None:
         )
 
 
-def as_variant(study: Study, name: str | None) -> Study:
-    """Return the study as one of its variants makes it, as written where there is none of that name."""
-    return study.variant(name) if name and name in {v.name for v in study.variants} else study
-
-
 def bundle(results: Results, study: Study, change: int, *, full: int) -> dict[str, Any]:
     """Return the pictures and what the pointer needs to read them."""
-    chart, machine = drawings.stroke(results), drawings.machine(results)
+    chart, machine = drawings.stroke(results), drawings.bench(results)
     position = int(results.stroke.stroke.size // 2)
     count = study.operators.count
     said = f"{count} operators" if count >= full else f"{count} of {full} operators"
@@ -81,11 +79,13 @@ def bundle(results: Results, study: Study, change: int, *, full: int) -> dict[st
         "machine": machine.svg,
         "chart": chart.svg,
         "operators": drawings.operators(results, position).svg,
+        "corner": drawings.corner(results, position),
+        "marks": machine.marks,
         "span": drawings.stroke_span(chart),
         "strokes": [round(float(s), 6) for s in results.stroke.stroke],
         "readout": [readout(results, p) for p in range(results.stroke.stroke.size)],
         "position": position,
-        "mm_per_unit": drawings.mm_per_unit(machine),
+        "mm_per_unit": machine.mm_per_unit,
         "said": said,
     }
 

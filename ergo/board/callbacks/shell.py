@@ -3,16 +3,17 @@
 from pathlib import Path
 from typing import Any
 
-from dash import ALL, Dash, Input, Output, State, ctx, html, no_update
-from dash.exceptions import PreventUpdate
+from dash import Dash, Input, Output, State, html, no_update
 
+from ergo.board import layouts
 from ergo.board.callbacks.values import state_of
 from ergo.board.guard import work_key
-from ergo.board.ids import Id, Part
-from ergo.board.layouts import bench
-from ergo.board.opening import open_shipped, shipped
+from ergo.board.ids import Id
+from ergo.board.opening import in_folder, shipped
 from ergo.board.room import Room
 from ergo.board.store import Work
+
+READ = {"/left-out": Id.LEFT_OUT_BODY, "/let-go": Id.LET_GO_BODY, "/sources": Id.SOURCES_BODY}
 
 
 def register(app: Dash, room: Room) -> None:
@@ -27,22 +28,7 @@ def register(app: Dash, room: Room) -> None:
     )
     def page(path: str, tab: str) -> tuple[Any, Any]:
         work = room.store.work(work_key())
-        return page_of(path, work), _state(work, tab)
-
-    @app.callback(
-        Output(Id.PAGE, "children", allow_duplicate=True),
-        Output(Id.ARRIVED, "data", allow_duplicate=True),
-        Input({"type": str(Part.SHIPPED), "path": ALL}, "n_clicks"),
-        State(Id.PLACE, "pathname"),
-        State(Id.TAB, "data"),
-        prevent_initial_call=True,
-    )
-    def opened(clicks: list[int], path: str, tab: str) -> tuple[Any, Any]:
-        if not any(clicks) or not isinstance(ctx.triggered_id, dict):
-            raise PreventUpdate
-        work = room.store.work(work_key())
-        open_shipped(work, str(ctx.triggered_id["path"]), tab)
-        return page_of(path, work), _state(work, tab)
+        return page_of(path, work, room), _state(work, tab)
 
     @app.callback(
         Output(Id.VARIANT, "data"), Output(Id.VARIANT, "value"),
@@ -73,11 +59,15 @@ def register(app: Dash, room: Room) -> None:
     )  # fmt: skip
 
 
-def page_of(path: str, work: Work) -> Any:
-    """Return the page at a path, as the work stands."""
-    if work.draft is None:
-        return bench.empty(shipped())
-    return bench.page(work.draft)
+def page_of(path: str, work: Work, room: Room) -> Any:
+    """Return the page at a path, as the work stands; without a study there is only opening one."""
+    if work.draft is None or path == "/open":
+        return layouts.opening.page(shipped(), in_folder(room.folder), empty=work.draft is None)
+    if path == "/take-away":
+        return layouts.take_away.page(work.name, folder=room.folder is not None, report=room.make_report is not None)
+    if path in READ:
+        return html.Div(html.Div(html.P("The engine is at it.", className="waiting"), id=READ[path]), className="page")
+    return layouts.bench.page(work.draft)
 
 
 def _state(work: Work, tab: str) -> dict[str, Any]:

@@ -1,7 +1,5 @@
 """The main page: the drawing, the chart under it, the ratings beside it, and the values."""
 
-from typing import Any
-
 from dash import dcc, html
 
 from ergo.board.draft import Draft
@@ -29,6 +27,7 @@ def page(draft: Draft) -> html.Div:
             dcc.Store(id=Id.DRAWN),
             dcc.Store(id=Id.PEOPLE_DRAWN),
             dcc.Store(id=Id.POINTER),
+            dcc.Store(id=Id.VIEW, data="machine"),
         ],
         className="bench-page",
     )  # fmt: skip
@@ -48,7 +47,11 @@ def _picture() -> html.Section:
             ),
             html.Div(
                 [
-                    html.Figure(id=Id.BENCH_PICTURE, className="drawn view-machine"),
+                    html.Div(
+                        [html.Figure(id=Id.BENCH_PICTURE, className="drawn"),
+                         html.Figure(id=Id.CORNER_PICTURE, className="drawn corner")],
+                        className="view-machine",
+                    ),
                     html.Figure(id=Id.PEOPLE_PICTURE, className="drawn view-operators"),
                     html.Div(id=Id.SPACE_PICTURE, className="drawn view-space"),
                 ],
@@ -71,23 +74,4 @@ def _chart() -> html.Section:
                    id=Id.POINTER_SAYS, className="readout"),  # fmt: skip
         ],
         className="stroke", **{"aria-label": "Stroke chart"},
-    )  # fmt: skip
-
-
-def empty(shipped: dict[str, str]) -> Any:
-    """Return what a board without a study offers."""
-    from ergo.board.ids import Part, of
-
-    rows = [
-        html.Li(html.Button([html.B(title), html.Span(name)], id=of(Part.SHIPPED, name), n_clicks=0))
-        for name, title in shipped.items()
-    ]
-    return html.Section(
-        [
-            html.H2("Start with a study"),
-            html.P("Open one of the shipped studies and change it by hand, start a new one, or bring your own file."),
-            html.Ul([*rows, html.Li(html.Button([html.B("New study"), html.Span("every key at its default")],
-                                                id=of(Part.SHIPPED, ":new"), n_clicks=0))], className="studies"),
-        ],
-        className="empty",
     )  # fmt: skip

@@ -1,0 +1,44 @@
+"""A drawing on a page, its text twin as a table, and the ways to take it away."""
+
+from collections.abc import Iterable, Sequence
+from typing import Any
+
+from dash import html
+
+from ergo.board.ids import Part, of
+from ergo.pictures.sheet import Drawing
+
+
+def figure(drawing: Drawing, name: str, *, wide: bool = False) -> html.Section:
+    """Return a drawing with its title, its twin and buttons that export it."""
+    return html.Section(
+        [
+            html.Figure(className="drawn", **{"data-svg": drawing.svg}),
+            html.Div(
+                [
+                    html.Details([html.Summary("The same as a table"), table(drawing.columns, drawing.rows)]),
+                    export("SVG", f"svg:{name}", drawing.title),
+                    export("PNG", f"png:{name}", drawing.title),
+                ],
+                className="figure-foot",
+            ),
+        ],
+        className="figure wide" if wide else "figure", **{"aria-label": drawing.title},
+    )  # fmt: skip
+
+
+def export(text: str, path: str, what: str = "") -> html.Button:
+    """Return a button that takes something away."""
+    extra = {"aria-label": f"{text}, {what}"} if what else {}
+    return html.Button(text, id=of(Part.EXPORT, path), n_clicks=0, className="quiet", **extra)
+
+
+def table(columns: Sequence[str], rows: Iterable[Sequence[Any]], *, caption: str = "", numbers: Sequence[int] = ()
+          ) -> html.Div:  # fmt: skip
+    """Return a plain table; `numbers` are the columns set to the right."""
+    right = {n: "number" for n in numbers}
+    head = html.Thead(html.Tr([html.Th(c, scope="col", className=right.get(n, "")) for n, c in enumerate(columns)]))
+    body = html.Tbody([html.Tr([html.Td(c, className=right.get(n, "")) for n, c in enumerate(row)]) for row in rows])
+    top = [html.Caption(caption)] if caption else []
+    return html.Div(html.Table([*top, head, body]), className="table", tabIndex="0", role="region",
+                    **{"aria-label": caption or f"Table of {columns[0] if columns else 'values'}"})  # fmt: skip
