@@ -60,7 +60,9 @@ def _upright_words(sheet: Sheet, middle: Array, along: Array, side: Array, text:
     else:
         anchor = "start" if side[0] > 0.3 else ("end" if side[0] < -0.3 else "middle")
         drop = 9.0 if side[1] > 0.3 else 3.5
-        sheet.words(middle + 8.0 * side + [0.0, drop - 3.5 if anchor != "middle" else drop], text, anchor=anchor, halo=True)
+        sheet.words(
+            middle + 8.0 * side + [0.0, drop - 3.5 if anchor != "middle" else drop], text, anchor=anchor, halo=True
+        )
 
 
 def angle_dimension(sheet: Sheet, centre: ArrayLike, start_rad: float, end_rad: float, radius: float, text: str, *,

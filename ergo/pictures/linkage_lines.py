@@ -1,5 +1,6 @@
 """The linkage between lever and tool: arm, link, pins, slide with its travel, rack, slot."""
 
+import itertools
 from typing import Any
 
 import numpy as np
@@ -69,7 +70,7 @@ def draw_linkage(sheet: Sheet, frame: Frame, results: Results, position: int, *,
         sheet.line([pivot, frame.at(points["rim"][position])], stroke=ink, weight=theme.THIN)
     chain = [pivot]
     chain += [frame.at(points[name][position]) for name in ("arm_pin", "slide_pin") if name in points]
-    for a, b in zip(chain[:-1], chain[1:], strict=True):
+    for a, b in itertools.pairwise(chain):
         _link(sheet, a, b, ink, weight)
     for pin in chain[1:]:
         sheet.circle(pin, PIN, stroke=ink, weight=weight, fill=sheet.ink.paper)
@@ -91,7 +92,9 @@ def _link(sheet: Sheet, a: Array, b: Array, ink: str, weight: float) -> None:
     if length < 1e-6:
         return
     across = 3.0 * np.array([-along[1], along[0]]) / length
-    sheet.line([a + across, b + across, b - across, a - across], stroke=ink, weight=weight, fill=sheet.ink.paper, closed=True)
+    sheet.line(
+        [a + across, b + across, b - across, a - across], stroke=ink, weight=weight, fill=sheet.ink.paper, closed=True
+    )
 
 
 def _block(sheet: Sheet, frame: Frame, points: dict[str, Array], position: int, ink: str, weight: float) -> None:

@@ -144,7 +144,12 @@ def draw_pivot(sheet: Sheet, frame: Frame, results: Results) -> None:
             sheet.line([at - way, at + way], stroke=sheet.ink.grey, dash=theme.CENTRE_DASH)
     else:
         along = frame.view.flat(axis) * np.array([1.0, -1.0])
-        sheet.line(_bar(at - 16.0 * along, at + 16.0 * along, 5.0, 5.0), weight=theme.MACHINE, fill=sheet.ink.paper, closed=True)
+        sheet.line(
+            _bar(at - 16.0 * along, at + 16.0 * along, 5.0, 5.0),
+            weight=theme.MACHINE,
+            fill=sheet.ink.paper,
+            closed=True,
+        )
         sheet.line([at - 26.0 * along, at + 26.0 * along], stroke=sheet.ink.grey, dash=theme.CENTRE_DASH)
     sheet.close()
 

@@ -66,15 +66,20 @@ def _foot(frame: Frame, ankle: Array, stature: float) -> Array:
     heel, toe = y - FOOT_BEHIND * stature, y + (FOOT_LENGTH - FOOT_BEHIND) * stature
     # A sole near the floor stands on it: the drawing's foot is only as high as the ankle.
     low = 0.0 if low < NEAR_FLOOR_MM else low
-    corners = [[x, heel, low], [x, toe, low], [x, toe, low + 0.4 * (high - low)], [x, y + 0.03 * stature, high], [x, heel, high]]
+    corners = [
+        [x, heel, low],
+        [x, toe, low],
+        [x, toe, low + 0.4 * (high - low)],
+        [x, y + 0.03 * stature, high],
+        [x, heel, high],
+    ]
     return frame.at(np.array(corners))
 
 
 def people_rows(results: Results, position: int) -> list[tuple[str, ...]]:
     """Return the text twin of the operators drawn."""
-    rows = []
-    for person in results.persons[:3]:
-        rows.append((
+    return [
+        (
             person.name,
             quantity(person.stature_mm, "mm"),
             quantity(person.mass_kg, "kg"),
@@ -82,5 +87,6 @@ def people_rows(results: Results, position: int) -> list[tuple[str, ...]]:
             quantity(float(np.asarray(person.trunk_deg)[position]), "°"),
             quantity(float(np.asarray(person.elbow_deg)[position]), "°"),
             quantity(float(np.asarray(person.capability_n)[position]), "N"),
-        ))  # fmt: skip
-    return rows
+        )
+        for person in results.persons[:3]
+    ]

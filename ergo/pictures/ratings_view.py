@@ -45,14 +45,17 @@ def ratings_drawing(results: Results, ink: Ink = theme.LIGHT, *, width: float = 
     for name, lines in blocks:
         _row(sheet, results, name, lines, y, bar, words_at)
         y += _height(lines)
-    return sheet.drawing("Ratings", _alt(results), ("rating", "value", "interval", "target", "met", "reason"), rows(results))
+    return sheet.drawing(
+        "Ratings", _alt(results), ("rating", "value", "interval", "target", "met", "reason"), rows(results)
+    )
 
 
 def _height(lines: list[str]) -> float:
     return max(26.0, LINE * len(lines) + 10.0)
 
 
-def _row(sheet: Sheet, results: Results, name: str, lines: list[str], y: float, bar: tuple[float, float], words_at: float) -> None:
+def _row(sheet: Sheet, results: Results, name: str, lines: list[str], y: float, bar: tuple[float, float],
+         words_at: float) -> None:  # fmt: skip
     """One rating: a row that meets its target is quiet, one that falls short is bold with a solid square."""
     r = results.ratings[name]
     bold = 400 if r.met else 600

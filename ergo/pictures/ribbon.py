@@ -50,7 +50,9 @@ def draw_ribbon(sheet: Sheet, frame: Frame, results: Results, *, tail: bool = Tr
         stop = min(last + 1, len(kinds) - 1)
         part = slice(first, stop + 1)
         line, tint = theme.hues(sheet.ink, kinds[first])
-        edge = np.concatenate([xy[part] + half[part, None] * across[part], (xy[part] - half[part, None] * across[part])[::-1]])
+        edge = np.concatenate(
+            [xy[part] + half[part, None] * across[part], (xy[part] - half[part, None] * across[part])[::-1]]
+        )
         sheet.line(edge, stroke=line, weight=theme.THIN, fill=tint, closed=True)
     sheet.line(xy, stroke=sheet.ink.ink, weight=theme.PATH)
     at = let_go_stroke(results)
@@ -155,7 +157,7 @@ def draw_overrun(sheet: Sheet, frame: Frame, results: Results, where: float) -> 
         return
     sheet.open("overrun")
     far = frame.at(overrun_path(results, where, float(overrun[2])))
-    way, across = _normals(far)
+    _, across = _normals(far)
     open_by = np.linspace(0.0, 0.22, len(far)) * max(float(np.linalg.norm(far[-1] - far[0])), 30.0) + 3.0
     for side in (-1.0, 1.0):
         sheet.line(far + side * open_by[:, None] * across, stroke=sheet.ink.ink, weight=theme.THIN)

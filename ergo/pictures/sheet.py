@@ -100,9 +100,7 @@ class Sheet:
         """Draw a circle."""
         x, y = np.asarray(centre, dtype=float)
         look = self._look(stroke or self.ink.ink, weight, dash, fill, 1.0)
-        self._body.append(
-            f'<circle cx="{coordinate(x)}" cy="{coordinate(y)}" r="{coordinate(radius)}"{look}/>'
-        )
+        self._body.append(f'<circle cx="{coordinate(x)}" cy="{coordinate(y)}" r="{coordinate(radius)}"{look}/>')
 
     def words(self, at: ArrayLike, text: object, *, size: float = theme.TEXT, anchor: str = "start", fill: str = "",
               weight: int = 400, turn: float = 0.0, halo: bool = False, longest: int = 0) -> None:  # fmt: skip

@@ -75,14 +75,14 @@ def nice_step(top: float, count: int = 5) -> float:
 
 def _place(box: tuple[float, ...], top: float, stroke: Array, force: Array) -> Array:
     x = box[0] + (box[2] - box[0]) * np.asarray(stroke, dtype=float)
-    y = box[3] - (box[3] - box[1]) * np.clip(np.asarray(force, dtype=float) / top, -0.02, 1.0)
+    y = box[3] - (box[3] - box[1]) * np.clip(np.asarray(force, dtype=float) / top, 0.0, 1.0)
     return np.stack([x, y], axis=-1)
 
 
 def _axes(sheet: Sheet, box: tuple[float, ...], top: float) -> None:
     sheet.open("axes")
     step = nice_step(top)
-    for n in range(int(round(top / step)) + 1):
+    for n in range(round(top / step) + 1):
         y = box[3] - (box[3] - box[1]) * n * step / top
         sheet.line([[box[0] - 4.0, y], [box[0], y]])
         if n:
@@ -105,7 +105,9 @@ def _curves(box: tuple[float, ...], top: float, results: Results, sex: str) -> t
     if f"{sex}_p05" not in allowed:
         return None
     high = allowed.get(f"{sex}_p95", allowed[f"{sex}_p50"])
-    low, middle, high = (_place(box, top, results.stroke.stroke, v) for v in (allowed[f"{sex}_p05"], allowed[f"{sex}_p50"], high))
+    low, middle, high = (
+        _place(box, top, results.stroke.stroke, v) for v in (allowed[f"{sex}_p05"], allowed[f"{sex}_p50"], high)
+    )
     return low, middle, high
 
 
@@ -169,7 +171,7 @@ def _limits(sheet: Sheet, box: tuple[float, ...], top: float, results: Results) 
 
 def _demand(sheet: Sheet, box: tuple[float, ...], top: float, results: Results) -> list[tuple]:
     s = results.stroke
-    curve = _place(box, top, s.stroke, np.maximum(s.demand_n, -0.02 * top))
+    curve = _place(box, top, s.stroke, s.demand_n)
     known = np.isfinite(s.demand_n)
     sheet.open("demand")
     sheet.line(curve[known], weight=3.0)
@@ -200,7 +202,8 @@ def _strip(sheet: Sheet, box: tuple[float, ...], results: Results) -> None:
         if p == len(kinds) or kinds[p] != kinds[start]:
             x = box[0] + (box[2] - box[0]) * edges[[start, p]]
             line, tint = theme.hues(sheet.ink, kinds[start])
-            sheet.line([[x[0], y - 7], [x[1], y - 7], [x[1], y + 7], [x[0], y + 7]], stroke=line, fill=tint, closed=True, weight=0.5)
+            corners = [[x[0], y - 7], [x[1], y - 7], [x[1], y + 7], [x[0], y + 7]]
+            sheet.line(corners, stroke=line, fill=tint, closed=True, weight=0.5)
             start = p
     for twentieth in range(1, 20, 2):
         where = twentieth / 20.0
@@ -212,17 +215,22 @@ def _strip(sheet: Sheet, box: tuple[float, ...], results: Results) -> None:
     sheet.close()
 
 
+def spread(places: list[float], low: float, high: float, gap: float = 12.0) -> list[float]:
+    """Return sorted places moved apart to at least `gap`, kept between `low` and `high` as far as they fit."""
+    found = list(places)
+    for n in range(len(found)):
+        found[n] = max(found[n], low if n == 0 else found[n - 1] + gap)
+    if found and found[-1] > high:
+        found[-1] = high
+        for n in range(len(found) - 2, -1, -1):
+            found[n] = min(found[n], found[n + 1] - gap)
+    return found
+
+
 def _edge_labels(sheet: Sheet, box: tuple[float, ...], labels: list[tuple]) -> None:
     """Write the names of curves at the right edge, pushed apart where they would overlap."""
     labels = sorted(labels, key=lambda pair: pair[0][1])
-    places = [float(at[1]) for at, _ in labels]
-    for n in range(1, len(places)):
-        places[n] = max(places[n], places[n - 1] + 12.0)
-    over = places[-1] - (box[3] - 2.0) if places else 0.0
-    if over > 0.0:
-        places[-1] -= over
-        for n in range(len(places) - 2, -1, -1):
-            places[n] = min(places[n], places[n + 1] - 12.0)
+    places = spread([float(at[1]) for at, _ in labels], box[1], box[3] - 2.0)
     for (at, text), y in zip(labels, places, strict=True):
         sheet.line([[at[0] + 1.0, at[1]], [box[2] + 12.0, y]], stroke=sheet.ink.grey, weight=0.5)
         bold = 600 if text == "needed" else 400

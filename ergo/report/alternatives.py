@@ -35,7 +35,9 @@ def changes_between(first: Results, second: Results) -> str:
     """Return the study values in which two placements differ."""
     flat_first, flat_second = _flat("", first.study), _flat("", second.study)
     keys = sorted(k for k in flat_first.keys() | flat_second.keys() if flat_first.get(k) != flat_second.get(k))
-    shown = [f"{k} {plain(flat_second.get(k, 'not given'), 60)}" for k in keys if not k.startswith(("variants", "study."))]
+    shown = [
+        f"{k} {plain(flat_second.get(k, 'not given'), 60)}" for k in keys if not k.startswith(("variants", "study."))
+    ]
     return ", ".join(shown) or "nothing"
 
 
@@ -56,9 +58,28 @@ def comparison(results: Results, against: Sequence[Results]) -> list[Rows | Word
             cells.append("not rated" if rating is None else figure(rating.value, 1) + ("" if rating.met else " ■"))
         rows.append((label(name), *cells))
     rows.append(("verdict", *(r.verdict for r in (results, *against))))
-    found: list[Rows | Words] = [Rows("Ratings of the placements compared; ■ marks one below its target", columns, tuple(rows))]
+    found: list[Rows | Words] = [
+        Rows("Ratings of the placements compared; ■ marks one below its target", columns, tuple(rows))
+    ]
     found += [Words(sentence(results, other)) for other in against]
+    found.append(Words(_choice(results, against)))
     return found
+
+
+def _choice(results: Results, against: Sequence[Results]) -> str:
+    """Say which of the placements serves most, so that a reader sees whether this one is the best of those tried."""
+    served = {n: r for n, r in enumerate((results, *against)) if "served" in r.ratings}
+    if 0 not in served:
+        return "The share served was not rated, so the placements cannot be ranked by it."
+    best = max(served, key=lambda n: (served[n].meets, served[n].ratings["served"].value, -n))
+    share = figure(served[best].ratings["served"].value, 1)
+    if best == 0:
+        return f"Of the placements compared, this one serves most people: {share} %."
+    reason = "meets every target and " if served[best].meets and not results.meets else ""
+    better = name_of(served[best])
+    return (
+        f"Of the placements compared, {better} {reason}serves most people, {share} %; this one was not the best tried."
+    )
 
 
 def sentence(results: Results, other: Results) -> str:

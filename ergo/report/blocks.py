@@ -45,7 +45,7 @@ class Claim:
     """One step of the argument: nothing is claimed without its number.
 
     `number` carries its unit, `interval` says what it lies between, `backing` names source keys with the
-    weakest status among the numbers that the claim rests on.
+    weakest status among the numbers that the claim rests on; `backing_words` stand in where the same were named before.
     """
 
     name: str
@@ -55,6 +55,7 @@ class Claim:
     target: str
     met: bool | None
     backing: tuple[tuple[str, str], ...]
+    backing_words: str = ""
 
 
 Block = Words | Points | Rows | Picture | Claim

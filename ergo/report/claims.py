@@ -1,7 +1,5 @@
 """The argument, one claim at a time: each with its number, interval, target, source and status."""
 
-from collections.abc import Iterable
-
 import numpy as np
 
 from ergo.evaluation.results import Results
@@ -9,7 +7,7 @@ from ergo.pictures.ratings_view import label
 from ergo.pictures.ribbon import let_go_stroke, overrun_at
 from ergo.pictures.sheet import figure, quantity
 from ergo.report.blocks import Claim, Words
-from ergo.sources import weakest
+from ergo.sources import STATUSES, weakest
 
 # Which tables a claim rests on, by the beginning of their keys. The population's own table is added by name.
 _BODY = ("body_", "mass_on_stature", "joint_ranges", "stance_parameters")
@@ -55,12 +53,10 @@ def backing(results: Results, claim: str) -> tuple[tuple[str, str], ...]:
 def argument(results: Results) -> list[tuple[str, list[Claim | Words]]]:
     """Return the claims in the order of the argument, under their headings."""
     found: list[tuple[str, list[Claim | Words]]] = []
-    for name in ("reach", "direction"):
-        found.append((RATED_HEADS[name], [rated(results, name)]))
+    found += [(RATED_HEADS[name], [rated(results, name)]) for name in ("reach", "direction")]
     found.append((RATED_HEADS["force"], [rated(results, "force"), *opinions(results)]))
     found.append(("The job repeats", repetition(results)))
-    for name in ("posture", "clearance"):
-        found.append((RATED_HEADS[name], [rated(results, name)]))
+    found += [(RATED_HEADS[name], [rated(results, name)]) for name in ("posture", "clearance")]
     found.append((RATED_HEADS["let_go"], let_go(results)))
     found.append(("The hand still feels the tool", feel(results)))
     found.append(("The strongest operator does not break it", strong_end(results)))
@@ -75,7 +71,10 @@ def rated(results: Results, name: str) -> Claim | Words:
     r = results.ratings[name]
     target = f"{figure(r.target, 1)}" if np.isfinite(r.target) else "none set"
     value = f"{figure(r.value, 1)} of 100" if np.isfinite(r.value) else "not rated"
-    return Claim(label(name), r.reason, value, between(r.low, r.high, ""), target, bool(r.met), backing(results, name))
+    words = "every source of the claims above" if name == "served" else ""
+    return Claim(
+        label(name), r.reason, value, between(r.low, r.high, ""), target, bool(r.met), backing(results, name), words
+    )
 
 
 def between(low: float, high: float, unit: str, decimals: int = 1) -> str:
@@ -103,7 +102,7 @@ def opinions(results: Results) -> list[Claim | Words]:
             f"The model allows the weakest twentieth of the women {quantity(weak, 'N')} and the middle of the women "
             f"{quantity(usual, 'N')} {where}.",
             quantity(weak, "N"), between(weak, s.allowed_n["men_p50"][p], "N", 0) + " (women P5 to men P50)",
-            f"{quantity(s.demand_n[p], 'N')} needed", None, backing(results, "force"),
+            f"{quantity(s.demand_n[p], 'N')} needed", None, backing(results, "force"), "the sources of the force rating above",
         )
     )  # fmt: skip
     for key, name, claim in (("table_n", "second way: handbook table", "handbook"),
@@ -118,12 +117,14 @@ def _opinion(results: Results, key: str, name: str, claim: str, p: int, where: s
     if not np.isfinite(values[p]):
         return Words(f"Force, {name}: not covered {where}: {reason}.")
     known = values[np.isfinite(values)]
-    text = f"It gives {quantity(values[p], 'N')} {where}; {quantity(known.min(), 'N')} to {quantity(known.max(), 'N')} along the stroke."
+    low, high = quantity(known.min(), "N"), quantity(known.max(), "N")
+    text = f"It gives {quantity(values[p], 'N')} {where}; {low} to {high} along the stroke."
     if key in results.stroke.not_covered:
         text += f" Elsewhere it is not covered: {reason}."
     need = results.stroke.demand_n[p]
-    return Claim(f"force, {name}", text, quantity(values[p], "N"), between(known.min(), known.max(), "N", 0) + " along the stroke",
-                 f"{quantity(need, 'N')} needed", None, backing(results, claim))  # fmt: skip
+    spread = f"{between(known.min(), known.max(), 'N', 0)} along the stroke"
+    needed = f"{quantity(need, 'N')} needed"
+    return Claim(f"force, {name}", text, quantity(values[p], "N"), spread, needed, None, backing(results, claim))
 
 
 def said(results: Results, key: str) -> list[str]:
@@ -164,8 +165,9 @@ def let_go(results: Results) -> list[Claim | Words]:
             f"When the load lets go at {quantity(100 * at, '%')} of the stroke the handle runs on by "
             f"{quantity(overrun[1], 'mm')} in the middle case" + (f", {toward}." if toward else ".")
         )
-        found.append(Claim("overrun", text, quantity(overrun[1], "mm"), between(overrun[0], overrun[2], "mm", 0), "none set", None,
-                           backing(results, "let_go")))  # fmt: skip
+        spread = between(overrun[0], overrun[2], "mm", 0)
+        rests = backing(results, "let_go")
+        found.append(Claim("overrun", text, quantity(overrun[1], "mm"), spread, "none set", None, rests))
     balance = np.asarray(results.stroke.balance, dtype=float)[p]
     if np.isfinite(balance).all():
         kept, step, thrown = (quantity(100 * v, "%", 1) for v in balance)
@@ -184,8 +186,8 @@ def feel(results: Results) -> list[Claim | Words]:
     low, high = float(np.nanmin(values)), float(np.nanmax(values))
     p = int(np.nanargmax(values))
     text = (
-        f"The smallest change of tool force that the hand would notice is {quantity(low, 'N', 1)} to {quantity(high, 'N', 1)} along "
-        f"the stroke; it is largest at {quantity(100 * results.stroke.stroke[p], '%')}."
+        f"The smallest change of tool force that the hand would notice is {quantity(low, 'N', 1)} to "
+        f"{quantity(high, 'N', 1)} along the stroke; it is largest at {quantity(100 * results.stroke.stroke[p], '%')}."
     )
     claim = Claim("feel", text, quantity(high, "N", 1), between(low, high, "N") + " along the stroke", "none set", None,
                   backing(results, "feel"))  # fmt: skip
@@ -203,8 +205,16 @@ def strong_end(results: Results) -> list[Claim | Words]:
         f"{quantity(100 * results.stroke.stroke[p], '%')} of the stroke; lever, pins and stops must survive it."
     )
     spread = between(float(np.nanmin(values)), float(np.nanmax(values)), "N", 0) + " along the stroke"
-    claim = Claim("strong end", text, quantity(values[p], "N"), spread, "none set", None, backing(results, "strong end"))
+    claim = Claim("strong end", text, quantity(values[p], "N"), spread, "none set", None, backing(results, "strong end"),
+                  _strong_backing(results))  # fmt: skip
     return [claim, *(Words(t) for t in said(results, "strong_end"))]
+
+
+def _strong_backing(results: Results) -> str:
+    """The strong end rests on the strengths of the force rating, and on tables of its own."""
+    force = {key for key, _ in backing(results, "force")}
+    own = [f"{key} ({status})" for key, status in backing(results, "strong end") if key not in force]
+    return "; ".join(["the strengths behind the force rating", *([", ".join(own)] if own else [])])
 
 
 def unique_sources(results: Results) -> list[str]:
@@ -212,6 +222,13 @@ def unique_sources(results: Results) -> list[str]:
     return sorted({row["source"] for row in results.sources})
 
 
-def listed(pairs: Iterable[tuple[str, str]]) -> str:
-    """Return source keys with their status as one line."""
-    return ", ".join(f"{key} ({status})" for key, status in pairs) or "the study's own geometry"
+def listed(claim: Claim) -> str:
+    """Return the sources of a claim as one line, weakest status first."""
+    if claim.backing_words:
+        return claim.backing_words
+    groups = []
+    for status in reversed(STATUSES):
+        keys = [key for key, found in claim.backing if found == status]
+        if keys:
+            groups.append(f"{status}: {', '.join(keys)}")
+    return "; ".join(groups) or "the study's own geometry, no shipped number"

@@ -11,7 +11,7 @@ from ergo.report.blocks import Block, Claim, Picture, Points, Report, Rows, Word
 from ergo.report.claims import listed
 from ergo.sources import folder
 
-STANDARDS = ["a-2a", "ua-1"]
+STANDARDS: list[Any] = ["a-2a", "ua-1"]
 # PDF/A wants a date; the clock would make every run another file, so the layout's own date stands in.
 LAYOUT_DATE = (2026, 12, 1)
 LONGEST_RUN = 32
@@ -32,9 +32,9 @@ def drawable() -> frozenset[int]:
 
     found: set[int] = set()
     for place in font_folders():
-        for path in sorted(folder("assets").glob(f"*/fonts/*.ttf")):
+        for path in sorted(folder("assets").glob("*/fonts/*.ttf")):
             if str(path.parent) == place:
-                found |= set(TTFont(path, lazy=True).getBestCmap())
+                found |= set(TTFont(path, lazy=True).getBestCmap() or {})
     return frozenset(found)
 
 
@@ -61,7 +61,7 @@ def pdf(made: Report, version: str) -> bytes:
     """
     import typst
 
-    files: dict[str, bytes] = {
+    files: Any = {
         "main.typ": (folder("assets") / "report" / "report.typ").read_bytes(),
         "data.json": json.dumps(page_data(made, version), ensure_ascii=False, sort_keys=True).encode(),
     }
@@ -110,7 +110,7 @@ def _block(block: Block) -> dict[str, Any]:
         return {"kind": "rows", **_rows(block)}
     if isinstance(block, Claim):
         texts = {n: printable(getattr(block, n)) for n in ("name", "sentence", "number", "interval", "target")}
-        return {"kind": "claim", "met": block.met, "backing": printable(listed(block.backing)), **texts}
+        return {"kind": "claim", "met": block.met, "backing": printable(listed(block)), **texts}
     return {"kind": "picture", **_picture(block)}
 
 
@@ -119,13 +119,19 @@ def _rows(block: Rows) -> dict[str, Any]:
         "title": printable(block.title),
         "columns": [printable(c) for c in block.columns],
         "rows": [[printable(c) for c in row] for row in block.rows],
-        "widths": list(block.widths),
+        "widths": list(block.widths) or _widths(block),
         "numeric": [n > 0 and all(_number_like(row[n]) for row in block.rows) for n in range(len(block.columns))],
     }
 
 
+def _widths(block: Rows) -> list[float]:
+    """Return column widths for a table that names none: as the longest cell, but a long column gives way."""
+    longest = [max([len(c), 3, *(len(row[n]) for row in block.rows)]) for n, c in enumerate(block.columns)]
+    return [min(v, 60.0) ** 0.75 for v in longest]
+
+
 def _number_like(text: str) -> bool:
-    return text == "not covered" or text.lstrip("−-")[:1].isdigit() and len(text) < 12
+    return text == "not covered" or (text.lstrip("−-")[:1].isdigit() and len(text) < 12)
 
 
 def _picture(block: Picture) -> dict[str, Any]:

@@ -15,6 +15,16 @@ from ergo.report.claims import argument, hardest, said
 from ergo.report.drawings import Drawings
 
 LONGEST_TITLE = 160
+STROKE_CAPTION = (
+    "Needed and allowed hand force. Bands from P5 to P95, women dashed, men solid, after what repetition leaves; thin lines "
+    "end where their method does."
+)
+STRIP_CAPTION = "Share of operators lost at each position of the stroke, stacked by limit."
+ONLY_DRAWS = "No rating's 95 % interval holds its target: another draw of people is not likely to change the verdict."
+NOT_VARIED = (
+    "Recalled and derived numbers were not varied in this evaluation, so this report cannot say which of them would change "
+    "the verdict."
+)
 
 
 def report(results: Results, drawings: Drawings, against: Sequence[Results] = (),
@@ -37,10 +47,10 @@ def report(results: Results, drawings: Drawings, against: Sequence[Results] = ()
     variant = f"Variant: {plain(results.variant, LONGEST_TITLE)}" if results.variant else ""
     sections = (
         Section("Purpose and scope", _purpose(results)),
-        Section("Who the operators are", tuple(inputs.people_blocks(results))),
+        Section("Who the operators are", _people(results, drawings)),
         Section("The machine", _machine(results, drawings), fresh_page=True),
         Section("The handle path", _path(results, drawings)),
-        Section("The argument", _argument(results, drawings), fresh_page=True),
+        Section("The argument", _argument(results, drawings)),
         Section("Alternatives tried", _alternatives(results, against)),
         Section("What would change the verdict", _flips(results)),
         Section("Residual risks and cautions", _risks(results)),
@@ -74,8 +84,11 @@ def _opening(results: Results, drawings: Drawings) -> tuple[Block, ...]:
             f"{label(r.name)}: {figure(r.value, 1)} of 100, target {figure(r.target, 1)}. {r.reason}" for r in short
         )
         found = [Words("Below target:", strong=True), Points(lines), *found]
-    found.append(Picture(drawings.ratings, "Ratings, 0 to 100: bar to the value, tick at the target, whisker for the 95 % interval. "
-                                           "A solid square marks a rating below its target."))  # fmt: skip
+    caption = (
+        "Ratings, 0 to 100: bar to the value, tick at the target, whisker for the 95 % interval. A solid square marks a "
+        "rating below its target."
+    )
+    found.append(Picture(drawings.ratings, caption))
     return tuple(found)
 
 
@@ -86,16 +99,24 @@ def _purpose(results: Results) -> tuple[Block, ...]:
     p = hardest(results)
     first = (
         "This report asks whether one hand lever is in the right place for the people who will work it: whether they reach it, "
-        "whether the working stroke is a pull, whether they can give the force as often as the job repeats, whether hand and forearm "
-        "stay clear, and what happens when the load lets go."
+        "whether the working stroke is a pull, whether they can give the force as often as the job repeats, whether hand "
+        "and forearm stay clear, and what happens when the load lets go."
     )
     second = (
-        f"The linkage is of the kind '{study['linkage']['kind']}' and its driven part travels {quantity(travel, unit, 1)}; the load "
-        f"is of the kind '{study['load']['kind']}'. The largest hand force it asks for is {quantity(results.stroke.demand_n[p], 'N')}, "
-        f"at {quantity(100 * results.stroke.stroke[p], '%')} of the stroke."
+        f"The linkage is of the kind '{study['linkage']['kind']}' and its driven part travels {quantity(travel, unit, 1)}; "
+        f"the load is of the kind '{study['load']['kind']}'. The largest hand force it asks for is "
+        f"{quantity(results.stroke.demand_n[p], 'N')}, at {quantity(100 * results.stroke.stroke[p], '%')} of the stroke."
     )
     third = "It covers this lever, these operators and this duty only. What it leaves out is said under residual risks."
     return Words(first), Words(second), Words(third)
+
+
+def _people(results: Results, drawings: Drawings) -> tuple[Block, ...]:
+    caption = (
+        f"{drawings.operators.title}: the position that loses most people. Women dashed, men solid, in the easiest posture that "
+        "carries the load; the curves are the furthest the hand gets from that stance."
+    )
+    return (*inputs.people_blocks(results), Picture(drawings.operators, caption, twin=True))
 
 
 def _machine(results: Results, drawings: Drawings) -> tuple[Block, ...]:
@@ -109,16 +130,14 @@ def _machine(results: Results, drawings: Drawings) -> tuple[Block, ...]:
 
 def _path(results: Results, drawings: Drawings) -> tuple[Block, ...]:
     text = (
-        "The ribbon in the drawing above is the handle path: its width is the needed hand force, open chevrons mark a pull toward the "
-        "operator, filled ones a push, double ticks neither. The same in numbers:"
+        "The ribbon in the drawing above is the handle path: its width is the needed hand force, open chevrons mark a pull "
+        "toward the operator, filled ones a push, double ticks neither. The same in numbers:"
     )
     columns = ("stroke", "right, mm", "away, mm", "up, mm", "way of the hand", "needed force")
     return (
         Words(text),
         Rows("Handle path", columns, tuple(ribbon_rows(results))),
-        Picture(drawings.operators, f"{drawings.operators.title}: the position that loses most people. Hairline outlines, women dashed, "
-                                    "men solid; the curves are the furthest the hand gets from that stance.", twin=True),
-    )  # fmt: skip
+    )
 
 
 def _argument(results: Results, drawings: Drawings) -> tuple[Block, ...]:
@@ -130,11 +149,12 @@ def _argument(results: Results, drawings: Drawings) -> tuple[Block, ...]:
         found.append(Words(title, strong=True))
         found += claims
         if title.startswith("The needed force"):
-            found.append(Picture(drawings.stroke, "Needed and allowed hand force. Bands from P5 to P95, women dashed, men solid, after "
-                                                  "what repetition leaves; thin lines end where their method does."))  # fmt: skip
+            found.append(Picture(drawings.stroke, STROKE_CAPTION))
         if title.startswith("The lever serves"):
-            found.append(Picture(drawings.people, "One dot an operator drawn; hollow are served, marked ones are left out."))
-            found.append(Picture(drawings.strip, "Share of operators lost at each position of the stroke, stacked by limit.", twin=True))
+            found.append(
+                Picture(drawings.people, "One dot an operator drawn; hollow are served, marked ones are left out.")
+            )
+            found.append(Picture(drawings.strip, STRIP_CAPTION, twin=True))
     return tuple(found)
 
 
@@ -143,8 +163,14 @@ def _alternatives(results: Results, against: Sequence[Results]) -> tuple[Block, 
         return tuple(comparison(results, against))
     names = [plain(v["name"], 60) for v in results.study.get("variants", ())]
     if names:
-        return (Words(f"The study holds {len(names)} variant(s) that this report was not asked to compare: {', '.join(names)}."),)
-    return (Words("No alternative was compared in this report, so it cannot say why this placement rather than another."),)
+        return (
+            Words(
+                f"The study holds {len(names)} variant(s) that this report was not asked to compare: {', '.join(names)}."
+            ),
+        )
+    return (
+        Words("No alternative was compared in this report, so it cannot say why this placement rather than another."),
+    )
 
 
 def _flips(results: Results) -> tuple[Block, ...]:
@@ -153,12 +179,16 @@ def _flips(results: Results) -> tuple[Block, ...]:
     for name in ordered(results):
         r = results.ratings[name]
         if np.isfinite(r.target) and np.isfinite(r.low) and r.low < r.target < r.high:
-            near.append(f"{label(name)}: its interval {figure(r.low, 1)} to {figure(r.high, 1)} holds the target {figure(r.target, 1)}, "
-                        "so another draw of people could change it.")  # fmt: skip
-    listed = [*said(results, "flips"), *near]
+            near.append(
+                f"{label(name)}: its interval {figure(r.low, 1)} to {figure(r.high, 1)} holds the target "
+                f"{figure(r.target, 1)}, so another draw of people could change it."
+            )
+    flips = said(results, "flips")
+    unknown = () if flips else (Words(NOT_VARIED),)
+    listed = [*flips, *near]
     if listed:
-        return (Points(tuple(listed)),)
-    return (Words("No rating's 95 % interval holds its target, and no number of weak status that was varied changes the verdict."),)
+        return (Points(tuple(listed)), *unknown)
+    return (Words(ONLY_DRAWS), *unknown)
 
 
 def _risks(results: Results) -> tuple[Block, ...]:
@@ -166,10 +196,16 @@ def _risks(results: Results) -> tuple[Block, ...]:
     short = [label(n) for n in ordered(results) if not results.ratings[n].met]
     found: list[Block] = []
     if short:
-        found.append(Words(f"The ratings below target ({', '.join(short)}) are residual risks as the lever stands.", strong=True))
+        found.append(
+            Words(f"The ratings below target ({', '.join(short)}) are residual risks as the lever stands.", strong=True)
+        )
     lost = float(np.mean(~np.asarray(results.crowd.served)))
-    found.append(Words(f"{quantity(100 * lost, '%', 1)} of the operators drawn are not served at every position; they must not be "
-                       "assigned to this lever without a trial."))  # fmt: skip
+    found.append(
+        Words(
+            f"{quantity(100 * lost, '%', 1)} of the operators drawn are not served at every position; people like them must "
+            "not be assigned to this lever without a trial."
+        )
+    )
     found.append(Points(rest))
     return tuple(found)
 
@@ -181,19 +217,25 @@ def _trial(results: Results) -> tuple[Block, ...]:
         f"Measure the force at the handle over the stroke with a pull gauge: {quantity(s.demand_n[p], 'N')} expected at "
         f"{quantity(100 * s.stroke[p], '%')}. Measured: ________ N",
         "At least one short woman, one tall man and one person of low strength worked the whole stroke from one stance.",
-        f"Watched at {quantity(100 * s.stroke[worst], '%')} of the stroke, where most people are lost: feet stay in place, no lunge.",
+        f"Watched at {quantity(100 * s.stroke[worst], '%')} of the stroke, where most people are lost: feet stay in place, "
+        "no lunge.",
         "The hand was watched against every zone named in the drawing, with the glove that will be worn.",
     ]
     lets_go = results.study["load"].get("lets_go_at")
     if lets_go is not None:
-        items.append(f"The load was let go on purpose at {quantity(100 * lets_go, '%')} of the stroke, first at low force, with nobody "
-                     "within reach of the machine; the overrun was measured. Measured: ________ mm")  # fmt: skip
+        items.append(
+            f"The load was let go on purpose at {quantity(100 * lets_go, '%')} of the stroke, first at low force, with a weight "
+            "in place of a person; the overrun was measured. Measured: ________ mm"
+        )
     items += [
-        f"The job was worked for a whole spell at {quantity(results.study['duty']['strokes_per_minute'], 'strokes a minute', 1)} and the "
-        "operators were asked about effort and discomfort.",
+        "The job was worked for a whole spell at "
+        f"{quantity(results.study['duty']['strokes_per_minute'], 'strokes a minute', 1)} and the operators were asked about "
+        "effort and discomfort.",
         "Guards, stops and instructions were reviewed under the local rules by the person answerable for them.",
     ]
-    first = Words("A calculation from population data does not replace a trial. Before release, with the operators who will work it:")
+    first = Words(
+        "A calculation from population data does not replace a trial. Before release, with the operators who will work it:"
+    )
     return first, Points(tuple(items), boxes=True)
 
 
@@ -206,14 +248,16 @@ def _methods(results: Results) -> tuple[Block, ...]:
 
 
 def _manifest(results: Results) -> tuple[Block, ...]:
-    text = "The same study, seed and version give the same bytes: pullward verify makes this result again from a bundle."
+    text = (
+        "The same study, seed and version give the same bytes: pullward verify makes this result again from a bundle."
+    )
     return Words(text), inputs.manifest_rows(results)
 
 
 def _stroke_rows(results: Results) -> Rows:
     s = results.stroke
-    columns = ("stroke %", "lever °", "needed N", "travel mm", "ratio", "pull", "women P5 N", "women P50 N", "men P5 N", "men P50 N",
-               "served %")  # fmt: skip
+    columns = ("stroke %", "lever °", "needed N", "travel mm", "ratio", "pull", "women P5 N", "women P50 N", "men P5 N",
+               "men P50 N", "served %")  # fmt: skip
     rows = []
     for p in range(s.stroke.size):
         allowed = (figure(s.allowed_n[k][p]) for k in ("women_p05", "women_p50", "men_p05", "men_p50"))

@@ -4,8 +4,9 @@ from dataclasses import dataclass
 
 from ergo.evaluation.results import Results
 from ergo.pictures import theme
-from ergo.pictures.bench_view import machine_drawing, operators_drawing
+from ergo.pictures.bench_view import machine_drawing
 from ergo.pictures.left_out_view import people_drawing, strip_drawing
+from ergo.pictures.operators_view import operators_drawing
 from ergo.pictures.ratings_view import ratings_drawing
 from ergo.pictures.sheet import Drawing
 from ergo.pictures.stroke_view import stroke_drawing
@@ -31,8 +32,8 @@ class Drawings:
 def draw_all(results: Results, ink: Ink = theme.PRINT) -> Drawings:
     """Return the drawings of a report."""
     return Drawings(
-        machine=machine_drawing(results, ink, height=720.0),
-        operators=operators_drawing(results, ink=ink, height=760.0, inked=-1),
+        machine=machine_drawing(results, ink, height=700.0),
+        operators=operators_drawing(results, ink=ink, height=690.0, inked=-1),
         stroke=stroke_drawing(results, ink),
         people=people_drawing(results, ink, height=300.0),
         strip=strip_drawing(results, ink),

@@ -65,13 +65,15 @@ def people_blocks(results: Results) -> list[Words | Points]:
     ages = asked["age_years"]
     first = Words(
         f"{people['count']} virtual operators, {100 * float(people['women_share']):.0f} % of them women, "
-        f"{ages[0]:g} to {ages[1]:g} years old, {asked['posture']}, working with the {asked['hand']} hand, glove: {asked['glove']}, "
+        f"{ages[0]:g} to {ages[1]:g} years old, {asked['posture']}, working with the {asked['hand']} hand, "
+        f"glove: {asked['glove']}, "
         f"shoes adding {asked['shoes_mm']:g} mm, drawn from the table {name} with seed {asked['seed']}."
     )
     if name not in table_keys():
         return [first, Words("The table is the user's own file; what it covers is for its maker to say.")]
     table = library().table(name)
-    about = f"The table: {table.title}; {table.meta.get('n', 'number of people not stated')}; status {table.meta.get('status', 'by row')}."
+    number, status = table.meta.get("n", "number of people not stated"), table.meta.get("status", "by row")
+    about = f"The table: {table.title}; {number}; status {status}."
     gaps = tuple(table.caveats) or ("no gaps are stated with the table",)
     return [first, Words(about), Words("What the table does not cover:"), Points(gaps)]
 
@@ -93,21 +95,26 @@ def tables_used(results: Results) -> Rows:
 
 def not_covered(results: Results) -> Points | None:
     """Return where a method was outside its published range, with the reason."""
-    names = {"table_n": "handbook table", "en_1005_3_n": "EN 1005-3", "feel_n": "feel", "overrun_mm": "overrun", "gap_mm": "gap"}
+    names = {
+        "table_n": "handbook table",
+        "en_1005_3_n": "EN 1005-3",
+        "feel_n": "feel",
+        "overrun_mm": "overrun",
+        "gap_mm": "gap",
+    }
     items = tuple(f"{names.get(key, key)}: {reason}" for key, reason in results.stroke.not_covered.items())
     return Points(items) if items else None
 
 
 def recalled_rows(results: Results) -> Rows:
-    """Return every number that was recalled and not checked against the print."""
-    rows = tuple(
-        (r.get("title", r["table"]), r.get("row", r.get("name", "")), f"{r.get('value', '')} {r.get('unit', '')}".strip(),
-         r["source"], r.get("locator", ""))
-        for r in results.sources
-        if r["status"] == "memory"
-    )  # fmt: skip
-    columns = ("table", "number", "value", "source", "where in it")
-    return Rows("Numbers with the status memory", columns, rows, (0.26, 0.22, 0.14, 0.2, 0.18))
+    """Return every number that was recalled and not checked against the print, by table and source."""
+    found: dict[tuple[str, str], list[str]] = {}
+    for r in results.sources:
+        if r["status"] == "memory":
+            text = f"{r.get('row', '')} {r.get('value', '')}\u202f{r.get('unit', '')}".strip()
+            found.setdefault((r.get("title", r["table"]), r["source"]), []).append(text)
+    rows = tuple((title, source, "; ".join(texts)) for (title, source), texts in sorted(found.items()))
+    return Rows("Numbers with the status memory", ("table", "source", "numbers"), rows, (0.22, 0.18, 0.6))
 
 
 def status_words() -> Points:
@@ -123,7 +130,9 @@ def bibliography_rows(results: Results) -> Rows:
         counts = ", ".join(f"{n} {s}" for s in STATUSES if (n := statuses.count(s)))
         entry = known[key].entry() if key in known else "not in the bibliography"
         rows.append((key, entry, counts))
-    return Rows("Sources of the numbers that took part", ("key", "source", "numbers by status"), tuple(rows), (0.26, 0.58, 0.16))
+    return Rows(
+        "Sources of the numbers that took part", ("key", "source", "numbers by status"), tuple(rows), (0.26, 0.58, 0.16)
+    )
 
 
 def manifest_rows(results: Results) -> Rows:
