@@ -5,7 +5,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from ergo.arm.search_kernels import describe
+from ergo.arm.stance_search import describe
 
 Array = NDArray[np.float64]
 _ROW = 27

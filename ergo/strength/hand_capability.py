@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 from ergo.arm import kernels as k
 from ergo.arm.body import STANCE_TABLE, Support, body_columns
 from ergo.arm.joints import JointRanges
-from ergo.arm.search_kernels import serve
+from ergo.arm.stance_search import serve
 from ergo.arm.segments import Segments
 from ergo.datasets import Library
 from ergo.people.operators import Operators
