@@ -3,6 +3,7 @@
 import csv
 import functools
 import hashlib
+import io
 import math
 import tomllib
 from collections.abc import Mapping
@@ -14,8 +15,10 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from ergo.errors import DataError
+from ergo.errors import DataError, Problem, StudyError
 from ergo.sources import STATUSES, folder
+
+LARGEST_OWN_BYTES = 1_000_000  # a population table of every dimension by sex is some 5 kB
 
 
 def number(text: str) -> float:
@@ -178,6 +181,46 @@ def _read_table(key: str) -> Table:
     return Table(key=key, rows=rows, meta=MappingProxyType(meta))
 
 
+def own_rows(path: Path, columns: tuple[str, ...]) -> tuple[tuple[str, Mapping[str, str]], ...]:
+    """Return the rows of a user's own CSV file, each with its place (`file:line`).
+
+    Raises
+    ------
+    StudyError
+        If the file is missing, too large, no text, no CSV, empty, or without one of `columns`.
+    """
+    expected = f"a CSV file with the columns {', '.join(columns)}"
+    try:
+        size = path.stat().st_size
+        if size > LARGEST_OWN_BYTES:
+            got, allowed = f"{size / 1e6:.1f} MB", f"up to {LARGEST_OWN_BYTES / 1e6:g} MB"
+            raise StudyError([Problem(path.name, "is too large for a table", got, allowed)])
+        reader = csv.DictReader(io.StringIO(path.read_text(encoding="utf-8-sig")), strict=True)
+        named = [name.strip() for name in reader.fieldnames or ()]
+        reader.fieldnames = named
+        rows = tuple((f"{path.name}:{reader.line_num}", _cells(row)) for row in reader)
+    except FileNotFoundError as error:
+        raise StudyError([Problem(path.name, "there is no such file", str(path), expected)]) from error
+    except UnicodeDecodeError as error:
+        raise StudyError([Problem(path.name, "is not UTF-8 text", "", expected)]) from error
+    except (OSError, csv.Error) as error:
+        raise StudyError([Problem(path.name, f"cannot be read: {error}", "", expected)]) from error
+    missing = [name for name in columns if name not in named]
+    if missing:
+        got = ", ".join(named)[:80] or "an empty file"
+        raise StudyError([Problem(f"{path.name}:1", f"lacks the columns {', '.join(missing)}", got, expected)])
+    if not rows:
+        raise StudyError([Problem(path.name, "has no rows", "", expected)])
+    return rows
+
+
+def _cells(row: "Mapping[str | None, Any]") -> Mapping[str, str]:
+    """Return a row's cells without blanks; what stands beyond the named columns goes under the name `beyond`."""
+    cells = {name: (cell or "").strip() for name, cell in row.items() if name is not None}
+    beyond = row.get(None)
+    return MappingProxyType({**cells, "beyond": ", ".join(beyond)} if beyond else cells)
+
+
 def checksum(path: Path) -> str:
     """Return the SHA-256 of a file's bytes."""
     return hashlib.sha256(path.read_bytes()).hexdigest()
@@ -186,7 +229,8 @@ def checksum(path: Path) -> str:
 def faults(key: str) -> list[str]:
     """Return what is wrong with a table's provenance: a status, a source or a checksum missing or wrong."""
     table = _read_table(key)
-    found = [f"{key}: meta.toml has no {name}" for name in ("title", "source", "checksums") if name not in table.meta]
+    needed = ("title", "source", "checksums")
+    found = [f"{key}: meta.toml has no {name}" for name in needed if name not in table.meta]
     for n, row in enumerate(table.rows, 2):
         status = row.get("status") or str(table.meta.get("status", ""))
         if status not in STATUSES:

@@ -5,32 +5,62 @@ import warnings
 import numpy as np
 from numpy.typing import NDArray
 
-from ergo.people.dimensions import DIMENSIONS
+from ergo.people.dimensions import COMPOSED, DIMENSIONS, composed
 from ergo.people.populations import SexModel
 
 Array = NDArray[np.float64]
 JOINT_FACTORS = 16
+BITS = 30  # binary digits of a Sobol coordinate
 # Sobol dimensions: sizes, then age, the common strength factor, the joint factors.
-WIDTH = len(DIMENSIONS) + 2 + JOINT_FACTORS
+AGE, COMMON, JOINTS = len(DIMENSIONS), len(DIMENSIONS) + 1, len(DIMENSIONS) + 2
+WIDTH = JOINTS + JOINT_FACTORS
 
 
 def sobol_points(count: int, seed: int, stream: int) -> Array:
-    """Return scrambled Sobol points (count, WIDTH) in the open unit cube; the same for the same seed and stream."""
+    """Return scrambled Sobol points (count, WIDTH) in the open unit cube.
+
+    Parameters
+    ----------
+    count : int
+        Points; the first of a longer draw are those of a shorter one.
+    seed, stream : int
+        The same two give the same points; each sex has its own stream.
+
+    Returns
+    -------
+    Array
+        Each coordinate in the middle of its cell of width 2^-30, so that none is 0 or 1.
+
+    Notes
+    -----
+    The general-purpose generator of SciPy: linear matrix scramble with a digital shift.
+    """
     from scipy.stats import qmc
 
-    rng = np.random.default_rng([seed, stream])
+    if count == 0:
+        return np.empty((0, WIDTH))
     with warnings.catch_warnings():
         # A count that is no power of two loses some balance, which the stated intervals already allow for.
         warnings.simplefilter("ignore", UserWarning)
-        points = qmc.Sobol(WIDTH, scramble=True, rng=rng).random(count)
-    return np.clip(points, 0.5**33, 1.0 - 0.5**33)
+        points = qmc.Sobol(WIDTH, scramble=True, bits=BITS, rng=np.random.default_rng([seed, stream])).random(count)
+    return points + 0.5 ** (BITS + 1)
 
 
 def normal_points(points: Array) -> Array:
-    """Return standard normal deviates of points in the unit cube."""
+    """Return the standard normal deviates of points in the open unit cube."""
     from scipy.special import ndtri
 
     return ndtri(points)
+
+
+def mass_deviate(model: SexModel, z: Array) -> Array:
+    """Return the standard normal deviate (n,) of log body mass: r z0 + sqrt(1 - r^2) z1."""
+    return model.stature_mass * z[:, 0] + np.sqrt(1.0 - model.stature_mass**2) * z[:, 1]
+
+
+def log_size(deviate: Array, median: Array | float, below: Array | float, above: Array | float) -> Array:
+    """Return a log body size from its standard normal deviate: median + deviate x the SD of its side."""
+    return median + deviate * np.where(deviate < 0.0, below, above)
 
 
 def draw_sizes(model: SexModel, z: Array) -> dict[str, Array]:
@@ -50,28 +80,17 @@ def draw_sizes(model: SexModel, z: Array) -> dict[str, Array]:
 
     Notes
     -----
-    ln stature and ln mass are binormal; every further dimension is mean + weights . (their deviates) + spread e,
-    with e correlated as the survey's residuals are.
+    The deviates of ln stature and ln mass are binormal, and e = factor . z is correlated as the survey's residuals
+    are. A further dimension that the table gives has the deviate weights . (theirs) + share e and the table's own
+    median and spread; one that it does not give is intercept + slopes . (ln stature, ln mass) + residual e.
+    Dimensions that follow from others follow from the drawn ones, unless the table gives them.
     """
-    stature = z[:, 0]
-    mass = model.stature_mass * z[:, 0] + np.sqrt(1.0 - model.stature_mass**2) * z[:, 1]
-    rest = z[:, 2:] @ np.linalg.cholesky(_positive(model.correlation)).T
-    logs = np.empty((len(z), len(DIMENSIONS)))
-    logs[:, 0] = model.mean[0] + model.sd[0] * stature
-    logs[:, 1] = model.mean[1] + model.sd[1] * mass
-    logs[:, 2:] = model.mean[2:] + np.column_stack([stature, mass]) @ model.weights.T + model.spread * rest
-    return dict(zip(DIMENSIONS, np.exp(logs).T, strict=True))
-
-
-def mass_deviate(model: SexModel, z: Array) -> Array:
-    """Return the standard normal deviate of log body mass (n,)."""
-    return model.stature_mass * z[:, 0] + np.sqrt(1.0 - model.stature_mass**2) * z[:, 1]
-
-
-def _positive(correlation: Array) -> Array:
-    """Return a shipped correlation matrix made symmetric and safely positive (it is rounded to four places)."""
-    matrix = 0.5 * (correlation + correlation.T)
-    values, vectors = np.linalg.eigh(matrix)
-    fixed = (vectors * np.maximum(values, 1e-6)) @ vectors.T
-    size = np.sqrt(np.diag(fixed))
-    return fixed / np.outer(size, size)
+    first = np.column_stack([z[:, 0], mass_deviate(model, z)])
+    rest = z[:, 2:] @ model.factor.T
+    logs = log_size(first, model.median[:2], model.below[:2], model.above[:2])
+    own = log_size(first @ model.weights.T + model.share * rest, model.median[2:], model.below[2:], model.above[2:])
+    followed = model.intercept + logs @ model.slopes.T + model.residual * rest
+    sizes = np.exp(np.column_stack([logs, np.where(model.given, own, followed)]))
+    drawn = dict(zip(DIMENSIONS, sizes.T, strict=True))
+    made = composed(drawn, model.thumb_share)
+    return {**drawn, **{name: made[name] for name in COMPOSED if name not in model.stated}}

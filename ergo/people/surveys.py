@@ -1,14 +1,19 @@
-"""What a survey's records say about bodies: moments of logarithms, regressions on stature and mass, residuals."""
+"""What a survey's records say about bodies: moments of logarithms, regressions on stature and mass, residuals.
+
+The shipped tables `us_army_2012` and `body_regression` and the army's rows of `mass_on_stature` hold what these
+functions return for the shipped records; a test works them out again.
+"""
 
 import csv
 import gzip
 import io
+from collections.abc import Mapping
 from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
-from ergo.people.dimensions import DIMENSIONS, FOLLOWING, SURVEY_COLUMNS
+from ergo.people.dimensions import DIMENSIONS, FOLLOWING, SURVEY_COLUMNS, composed, unit_of
 
 Array = NDArray[np.float64]
 SEXES = ("female", "male")
@@ -19,13 +24,14 @@ PERCENTILES = (1.0, 5.0, 50.0, 95.0, 99.0)
 class BodyFit:
     """One sex of a survey in logarithms.
 
-    `mean`, `sd` (D,) of log dimensions; `intercept`, `slopes` (D-2, 2), `residual_sd`, `r2` of each further
-    dimension on log stature and log mass; `correlation` (D-2, D-2) of their residuals; `stature_mass` the
-    correlation of log stature and log mass.
+    `mean`, `sd` (D,) and `log_correlation` (D, D) of log dimensions; `intercept`, `slopes` (D-2, 2),
+    `residual_sd`, `r2` of each further dimension on log stature and log mass; `correlation` (D-2, D-2) of their
+    residuals; `stature_mass` the correlation of log stature and log mass.
     """
 
     mean: Array
     sd: Array
+    log_correlation: Array
     intercept: Array
     slopes: Array
     residual_sd: Array
@@ -34,58 +40,80 @@ class BodyFit:
     stature_mass: float
 
 
-def read_records(packed: bytes) -> dict[str, Array]:
-    """Return the records of a gzipped CSV as sex (text) and every dimension (n,) [mm, kg]."""
-    text = gzip.decompress(packed).decode("utf-8")
-    rows = list(csv.DictReader(io.StringIO(text)))
-    columns = {name: np.array([float(r[name]) for r in rows]) for name in rows[0] if name not in ("sex", "writing_hand")}
-    found = {name: _combined(columns, recipe) for name, recipe in SURVEY_COLUMNS.items()}
-    return {"sex": np.array([r["sex"] for r in rows]), **found}
+@dataclass(frozen=True)
+class Records:
+    """The records of a survey: the sex of each person (n,), and every dimension (n,) [mm, kg]."""
+
+    sex: NDArray[np.str_]
+    sizes: Mapping[str, Array]
 
 
-def _combined(columns: dict[str, Array], recipe: str) -> Array:
-    """Return a column, or a sum of columns written as `a-b+c`."""
-    total, sign = np.zeros(next(iter(columns.values())).size), 1.0
-    for part in recipe.replace("-", " - ").replace("+", " + ").split():
-        if part in "+-":
-            sign = 1.0 if part == "+" else -1.0
-        else:
-            total, sign = total + sign * columns[part], 1.0
-    return total
+def read_records(packed: bytes, thumb_share: float) -> Records:
+    """Return the records that a gzipped CSV holds.
+
+    Parameters
+    ----------
+    packed : bytes
+        The compressed file, columns as `SURVEY_COLUMNS` names them.
+    thumb_share : float
+        Thumb tip beyond the grip centre, as a share of the hand's length (row `thumb_beyond_grip_share`).
+
+    Returns
+    -------
+    Records
+    """
+    rows = list(csv.DictReader(io.StringIO(gzip.decompress(packed).decode("utf-8"))))
+    measured = {name: np.array([float(r[column]) for r in rows]) for name, column in SURVEY_COLUMNS.items()}
+    sizes = {**measured, **composed(measured, thumb_share)}
+    return Records(np.array([r["sex"] for r in rows]), sizes)
 
 
-def fit(records: dict[str, Array], sex: str, rows: NDArray[np.bool_] | None = None) -> BodyFit:
+def fit(records: Records, sex: str, rows: NDArray[np.bool_] | None = None) -> BodyFit:
     """Return the lognormal description of one sex of the records, or of the chosen rows of it.
 
-    Equation: ln d = intercept + slopes . (ln stature, ln mass) + residual, by least squares, each sex apart.
+    Parameters
+    ----------
+    records : Records
+        n people.
+    sex : str
+        `female` or `male`.
+    rows : array, optional
+        (n,) whether a person is used.
+
+    Returns
+    -------
+    BodyFit
+
+    Notes
+    -----
+    ln d = intercept + slopes . (ln stature, ln mass) + residual, by least squares, each sex apart.
     """
-    chosen = records["sex"] == sex
-    if rows is not None:
-        chosen = chosen & rows
-    logs = np.log(np.stack([records[name][chosen] for name in DIMENSIONS], axis=1))
-    mean, sd = logs.mean(axis=0), logs.std(axis=0, ddof=1)
+    chosen = records.sex == sex if rows is None else (records.sex == sex) & rows
+    logs = np.log(np.stack([records.sizes[name][chosen] for name in DIMENSIONS], axis=1))
+    whole = np.corrcoef(logs.T)
     design = np.column_stack([np.ones(len(logs)), logs[:, :2]])
-    solution = np.asarray(np.linalg.lstsq(design, logs[:, 2:], rcond=None)[0], dtype=np.float64)
+    solution = np.linalg.lstsq(design, logs[:, 2:], rcond=None)[0]
     left = logs[:, 2:] - design @ solution
     return BodyFit(
-        mean=mean,
-        sd=sd,
+        mean=logs.mean(axis=0),
+        sd=logs.std(axis=0, ddof=1),
+        log_correlation=whole,
         intercept=solution[0],
-        slopes=solution[1:].T.copy(),
+        slopes=np.asarray(solution[1:].T, dtype=float),
         residual_sd=left.std(axis=0, ddof=3),
         r2=1.0 - left.var(axis=0) / logs[:, 2:].var(axis=0),
-        correlation=np.asarray(np.corrcoef(left.T), dtype=np.float64),
-        stature_mass=float(np.corrcoef(logs[:, 0], logs[:, 1])[0, 1]),
+        correlation=np.asarray(np.corrcoef(left.T), dtype=float),
+        stature_mass=float(whole[0, 1]),
     )
 
 
-def moments_rows(records: dict[str, Array], fits: dict[str, BodyFit]) -> list[dict[str, str]]:
-    """Return the rows of a population table: moments, log moments and percentiles of every dimension by sex."""
+def moments_rows(records: Records, fits: Mapping[str, BodyFit]) -> list[dict[str, str]]:
+    """Return the rows of a population table: moments, percentiles and log moments of what was measured, by sex."""
     found = []
     for sex in SEXES:
-        for n, name in enumerate(DIMENSIONS):
-            values = records[name][records["sex"] == sex]
-            row = {"sex": sex, "dimension": name, "unit": "kg" if name == "body_mass" else "mm", "n": str(values.size)}
+        for n, name in enumerate(SURVEY_COLUMNS):
+            values = records.sizes[name][records.sex == sex]
+            row = {"sex": sex, "dimension": name, "unit": unit_of(name), "n": str(values.size)}
             row |= {"mean": f"{values.mean():.2f}", "sd": f"{values.std(ddof=1):.2f}"}
             row |= {f"p{p:02.0f}": f"{np.percentile(values, p):.1f}" for p in PERCENTILES}
             row |= {"log_mean": f"{fits[sex].mean[n]:.6f}", "log_sd": f"{fits[sex].sd[n]:.6f}", "status": "computed"}
@@ -93,7 +121,16 @@ def moments_rows(records: dict[str, Array], fits: dict[str, BodyFit]) -> list[di
     return found
 
 
-def regression_rows(fits: dict[str, BodyFit]) -> list[dict[str, str]]:
+def correlation_rows(fits: Mapping[str, BodyFit]) -> list[dict[str, str]]:
+    """Return the correlations of the logarithms of all dimensions, a row each by sex."""
+    return [
+        {"sex": sex, "dimension": name, **{o: f"{body.log_correlation[n, m]:.4f}" for m, o in enumerate(DIMENSIONS)}}
+        for sex, body in fits.items()
+        for n, name in enumerate(DIMENSIONS)
+    ]
+
+
+def regression_rows(fits: Mapping[str, BodyFit]) -> list[dict[str, str]]:
     """Return the rows of the regression table, with the residual correlations as further columns."""
     found = []
     for sex, body in fits.items():
@@ -101,18 +138,19 @@ def regression_rows(fits: dict[str, BodyFit]) -> list[dict[str, str]]:
             row = {"sex": sex, "dimension": name, "intercept": f"{body.intercept[n]:.6f}"}
             row |= {"on_log_stature": f"{body.slopes[n, 0]:.6f}", "on_log_mass": f"{body.slopes[n, 1]:.6f}"}
             row |= {"residual_sd": f"{body.residual_sd[n]:.6f}", "r2": f"{body.r2[n]:.4f}", "status": "computed"}
-            row |= {f"r_{other}": f"{body.correlation[n, m]:.4f}" for m, other in enumerate(FOLLOWING)}
+            row |= {f"r_{other}": f"{body.correlation[n, m]:.6f}" for m, other in enumerate(FOLLOWING)}
             found.append(row)
     return found
 
 
-def mass_rows(records: dict[str, Array], fits: dict[str, BodyFit]) -> list[dict[str, str]]:
-    """Return log mass on log stature by sex, and their correlation, for tables that give no mass."""
+def mass_rows(fits: Mapping[str, BodyFit], basis: str) -> list[dict[str, str]]:
+    """Return log mass on log stature by sex, and their correlation, for tables that lack mass or correlation."""
     found = []
     for sex, body in fits.items():
         slope = body.stature_mass * body.sd[1] / body.sd[0]
         found.append(
             {
+                "basis": basis,
                 "sex": sex,
                 "intercept": f"{body.mean[1] - slope * body.mean[0]:.6f}",
                 "on_log_stature": f"{slope:.6f}",
