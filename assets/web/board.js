@@ -14,6 +14,8 @@
     lastKey: 0,
     drawn: null,      // what the last pictures carried
     position: null,   // stroke position under the pointer
+    open: {},         // which sections of the drawer are open
+    focus: null,      // control of the drawer that had the focus last
     timer: null,
   };
   window.pullward = board;
@@ -115,6 +117,7 @@
   }
 
   function rest() {
+    board.restTimer = null;
     if (board.held) {
       const edit = board.held;
       board.held = null;
@@ -455,7 +458,29 @@
       box.removeAttribute("data-svg");
     });
     follow();
+    reopen();
   }).observe(document.documentElement, { childList: true, subtree: true, attributes: true, attributeFilter: ["data-svg"] });
+
+  /* A drawer that was built anew has the same sections open, and the focus where it was. */
+  document.addEventListener("toggle", (event) => {
+    const section = event.target.dataset && event.target.dataset.section;
+    if (section) board.open[section] = event.target.open;
+  }, true);
+
+  function reopen() {
+    document.querySelectorAll("details[data-section]").forEach((section) => {
+      const name = section.dataset.section;
+      if (section.seen) return;
+      section.seen = true;
+      if (name in board.open) section.open = board.open[name];
+    });
+    if (board.focus && document.activeElement === document.body) {
+      const lost = document.getElementById(board.focus);
+      if (lost) lost.focus({ preventScroll: true });
+    }
+  }
+
+  document.addEventListener("focusin", (event) => { board.focus = event.target.closest(".drawer") ? event.target.id : null; });
 
   /* The link of the page that is shown, and a chart that the keyboard can walk along. */
   function follow() {

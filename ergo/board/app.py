@@ -15,7 +15,8 @@ from ergo.board.shell import frame
 from ergo.board.store import Store
 from ergo.evaluation.results import Results
 from ergo.sources import folder as data_folder
-from ergo.study.model import Study
+from ergo.study.reader import read_text
+from ergo.study.template import template
 
 INDEX = """<!DOCTYPE html>
 <html lang="en" data-mantine-color-scheme="light">
@@ -26,8 +27,8 @@ INDEX = """<!DOCTYPE html>
 
 
 def create_app(*, evaluate: Callable[..., Results], make_report: Callable[..., bytes] | None = None,
-               store_folder: Path | None = None, study_folder: Path | None = None, first: Study | None = None,
-               port: int = 8060) -> Dash:  # fmt: skip
+               store_folder: Path | None = None, study_folder: Path | None = None, first: Path | None = None,
+               port: int = 8060, host: str = "127.0.0.1", start: bool = False) -> Dash:  # fmt: skip
     """Return the board.
 
     Parameters
@@ -40,24 +41,28 @@ def create_app(*, evaluate: Callable[..., Results], make_report: Callable[..., b
         Where works are kept; the user's state folder if None.
     study_folder : Path or None
         The only folder whose studies the browser may open and save.
-    first : Study or None
-        Study that a new browser begins with.
-    port : int
-        Port that the board is served on, for the check of hosts.
+    first : Path or None
+        Study file that every browser begins with.
+    port, host : int, str
+        Where the board is served, for the check of hosts.
+    start : bool
+        Whether the engine's worker starts now, and compiles the kernels.
     """
     store = Store(state_folder() if store_folder is None else store_folder)
-    room = Room(store, Judge(evaluate), study_folder, make_report, {"first": first, "port": port})
+    room = Room(store, Judge(evaluate), study_folder, make_report, first)
     app = Dash(
         "pullward", assets_folder=str(data_folder("assets") / "web"), index_string=INDEX, title="Pullward",
         update_title="", suppress_callback_exceptions=True, serve_locally=True, compress=False,
     )  # fmt: skip
-    guard.guard(app.server, port=port)
+    guard.guard(app.server, port=port, hosts=(*guard.LOOPBACK, host))
     app.server.add_url_rule("/inks.css", "inks", lambda: (drawings.theme_css(), 200, {"Content-Type": "text/css"}))
     app.layout = lambda: frame(engine_ready=room.judge.ready.is_set(), theme=_theme())
     for page in (shell, values, bench, left_out, let_go, opening, sources, take_away):
         page.register(app, room)
     app.server.config["BOARD_CSP"] = guard.policy(app)
     app.server.config["BOARD_ROOM"] = room
+    if start:
+        room.judge.start(read_text(template()))
     return app
 
 

@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 from ergo.evaluation.results import Results
 from ergo.frames import pivot_axis, zero_direction
 from ergo.pictures import theme
+from ergo.pictures.bench_view import zone_corners
 from ergo.pictures.dimensions import angle_dimension, leader, length_dimension
 from ergo.pictures.linkage_lines import draw_guide, draw_linkage, linkage_points
 from ergo.pictures.machine_lines import (
@@ -112,24 +113,12 @@ def _machine_points(results: Results) -> list[Array]:
     over = None if where is None else overrun_at(results, where)
     if where is not None and over is not None:
         found.append(overrun_path(results, where, float(over[2])))
-    reach = max(float(np.ptp(path, axis=0).max()), 200.0)
-    low, high = path.min(axis=0) - reach, path.max(axis=0) + reach
     for zone in results.study.get("zones", ()):
-        found.append(np.clip(_zone_corners(zone), low, high))
+        found.append(zone_corners(zone, path))
     near, bench = np.median(path, axis=0), results.study["bench"]
     top = bench["surface_height_mm"]
     found.append(np.array([[near[0], 0.0, top], [near[0], 0.0, top - bench["edge_thickness_mm"]]]))
     return found
-
-
-def _zone_corners(zone: dict) -> Array:
-    if zone["shape"] == "box":
-        half = np.array(zone["size_mm"], dtype=float) / 2.0
-        return np.array(zone["centre_mm"], dtype=float) + np.array([[1.0], [-1.0]]) * half
-    if zone["shape"] == "ball":
-        return np.array(zone["centre_mm"], dtype=float) + np.array([[1.0], [-1.0]]) * zone["radius_mm"]
-    ends = np.array([zone["from_mm"], zone["to_mm"]], dtype=float)
-    return np.concatenate([ends + zone["radius_mm"], ends - zone["radius_mm"]])
 
 
 def _view(sheet: Sheet, frame: Frame, results: Results, extent: Extent, *, true: bool) -> None:
@@ -175,7 +164,8 @@ def _true_dimensions(sheet: Sheet, frame: Frame, results: Results) -> None:
     """Lever length, lever angles, the pivot's place and the linkage, in the view of true length."""
     lever, made = results.study["lever"], lever_points(results)
     pivot, tip = frame.at(made["pivot"]), frame.at(made["end"][0])
-    side = float(np.sign(np.cross(tip - pivot, frame.at(made["end"]).mean(axis=0) - pivot))) or 1.0
+    along, across = tip - pivot, frame.at(made["end"]).mean(axis=0) - pivot
+    side = float(np.sign(along[0] * across[1] - along[1] * across[0])) or 1.0
     length_dimension(sheet, pivot, tip, f"length {figure(lever['length_mm'])}", away=side * 30.0, key="lever.length_mm")
     axis = pivot_axis(lever["axis"])
     flat = frame.view.flat(zero_direction(axis))

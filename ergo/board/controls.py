@@ -25,8 +25,9 @@ SECTIONS = {
     "screw": "Screw feed to compare with",
     "structure": "Strong end",
     "targets": "Targets",
+    "variants": "Variants",
 }
-LISTS = ("zones", "touch_points")
+LISTS = ("zones", "touch_points", "variants")
 KIND_KEY = {"linkage": "kind", "load": "kind", "zones": "shape"}
 PARTS = {"point": ("right", "away", "up"), "pair": ("from", "to")}
 SIZE_PARTS = ("right", "away", "up")
@@ -36,7 +37,7 @@ _HALF_WINDOW = {"deg": 60.0, "mm": 200.0}
 _STEP = {"mm": 1.0, "deg": 1.0, "N": 1.0, "kg": 0.1, "um": 1.0, "years": 1.0}
 
 
-def rows_of(section: str, data: dict[str, Any], kind: str = "") -> list[dict[str, Any]]:
+def rows_of(section: str, kind: str = "") -> list[dict[str, Any]]:
     """Return the schema's rows of one section, those of its kind only."""
     return [r for r in schema() if r["section"] == section and r["of_kind"] == kind]
 
@@ -74,8 +75,9 @@ def control_paths(data: dict[str, Any]) -> dict[str, dict[str, Any]]:
                 continue
             place = f"{section}[{n}]" if isinstance(parts, list) else section
             kind = str(part.get(KIND_KEY[section], "")) if section in KIND_KEY else ""
-            for row in rows_of(section, data, kind):
-                found[f"{place}.{row['name']}"] = row
+            for row in rows_of(section, kind):
+                if row["path"] != "variants.set":
+                    found[f"{place}.{row['name']}"] = row
     return found
 
 
@@ -241,7 +243,7 @@ def _worded(path: str, row: dict[str, Any], value: Any, problem: str) -> list[An
     if row["kind"] == "flag":
         body: Any = dmc.Switch(checked=bool(value), **common)
     elif row["kind"] == "choice" or (row["choices"] and value in row["choices"]):
-        choices = list(dict.fromkeys([*row["choices"], *([value] if value else [])]))
+        choices: list[Any] = list(dict.fromkeys([*row["choices"], *([value] if value else [])]))
         body = dmc.Select(data=choices, value=value, allowDeselect=False, error=problem or None, **common)
     elif row["name"] == "notes":
         body = dmc.Textarea(value=str(value), debounce=500, autosize=True, error=problem or None, **common)

@@ -4,15 +4,17 @@ import dataclasses
 
 from ergo.board.bench_sheet import BenchSheet, bench_sheet, operators_corner
 from ergo.evaluation.results import Results
-from ergo.pictures import bench_view, left_out_view, ratings_view, stroke_view, theme
+from ergo.pictures import bench_view, left_out_view, operators_view, ratings_view, stroke_view, theme
 from ergo.pictures.sheet import Drawing
 from ergo.pictures.theme import Ink
+
+BANDS = ("var(--band-1)", "var(--band-2)", "var(--band-3)")
 
 
 def page_ink() -> Ink:
     """Return inks that the page's style sheet fills in, so that one drawing serves every theme and the printer."""
     names = [f.name for f in dataclasses.fields(Ink) if f.name != "band"]
-    return Ink(**{n: f"var(--{n.replace('_', '-')})" for n in names}, band=tuple(f"var(--band-{n})" for n in (1, 2, 3)))
+    return Ink(**{n: f"var(--{n.replace('_', '-')})" for n in names}, band=BANDS)
 
 
 PAGE = page_ink()
@@ -36,7 +38,7 @@ def machine(results: Results, ink: Ink = PAGE) -> Drawing:
 
 def operators(results: Results, position: int | None, ink: Ink = PAGE) -> Drawing:
     """Return three operators at the lever at one stroke position."""
-    return bench_view.operators_drawing(results, position, ink)
+    return operators_view.operators_drawing(results, position, ink)
 
 
 def stroke(results: Results, ink: Ink = PAGE, *, width: float = 640.0, height: float = 240.0) -> Drawing:
@@ -69,7 +71,7 @@ def named(name: str, results: Results) -> Drawing:
         "ratings": ratings_view.ratings_drawing,
     }
     if name == "operators":
-        return bench_view.operators_drawing(results, ink=theme.PRINT)
+        return operators_view.operators_drawing(results, ink=theme.PRINT)
     return made[name](results, theme.PRINT)
 
 

@@ -19,7 +19,7 @@ RESULTS_KEPT = 48
 ENGINE = threading.Lock()
 
 
-class Superseded(Exception):
+class SupersededError(Exception):
     """The question was dropped, since a newer one came from the same browser."""
 
 
@@ -34,7 +34,7 @@ class Question:
         self._answer: Results | BaseException | None = None
 
     def wait(self, timeout_s: float = 120.0) -> Results:
-        """Return the results; raises `Superseded`, `TimeoutError`, or what the engine refused with."""
+        """Return the results; raises `SupersededError`, `TimeoutError`, or what the engine refused with."""
         if not self._done.wait(timeout_s):
             msg = "the engine has not answered in time"
             raise TimeoutError(msg)
@@ -100,7 +100,7 @@ class Judge:
                 if old is not None and old.owner == owner:
                     old.drop()
                     if old is not self._running:
-                        old.answer(Superseded())
+                        old.answer(SupersededError())
             known = self._answers.get(question.key)
             if known is not None:
                 self._answers.move_to_end(question.key)
@@ -130,7 +130,7 @@ class Judge:
         def tell(share: float, what: str) -> None:
             question.share, question.what = share, what
             if question.dropped:
-                raise Superseded
+                raise SupersededError
 
         started = time.perf_counter()
         answer: Results | BaseException
@@ -138,7 +138,7 @@ class Judge:
             with ENGINE:
                 extra: dict[str, Any] = {"tell": tell} if self._tells else {}
                 answer = self._evaluate(question.study, **extra)
-        except (PullwardError, Superseded) as error:
+        except (PullwardError, SupersededError) as error:
             answer = error
         except Exception as error:
             answer = PullwardError(f"the engine failed on this study: {type(error).__name__}: {error}")
@@ -149,7 +149,7 @@ class Judge:
                 self._answers[question.key] = answer
                 while len(self._answers) > RESULTS_KEPT:
                     self._answers.popitem(last=False)
-        question.answer(Superseded() if question.dropped else answer)
+        question.answer(SupersededError() if question.dropped else answer)
 
 
 def _size(study: Study) -> int:

@@ -1,9 +1,8 @@
 """What every callback works with: the store, the engine's worker, the folders, and what was put in from outside."""
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from pathlib import Path
-from typing import Any
 
 from ergo.board.judge import Judge
 from ergo.board.store import Store
@@ -17,4 +16,5 @@ class Room:
     judge: Judge
     folder: Path | None
     make_report: Callable[..., bytes] | None
-    options: dict[str, Any]
+    first: Path | None = None
+    greeted: set[str] = field(default_factory=set)

@@ -5,6 +5,7 @@ from typing import Any
 import dash_mantine_components as dmc
 from dash import dcc, html
 
+from ergo.board.attributes import attributes
 from ergo.board.ids import Id
 from ergo.board.layouts.figures import export
 from ergo.board.store import new_key
@@ -42,7 +43,7 @@ def frame(*, engine_ready: bool, theme: str) -> dmc.MantineProvider:
             html.Header([_title_block(), _tools(theme)], className="head"),
             html.Nav(
                 [dcc.Link(text, href=path, className="page-link") for path, text in PAGES.items()],
-                className="pages", **{"aria-label": "Pages"},
+                className="pages", **attributes(aria_label="Pages"),
             ),
             html.P(id=Id.ENGINE_SAYS, role="status", className="engine-says"),
             html.Div(id=Id.CONFLICT, role="alert", className="conflict"),
@@ -55,7 +56,7 @@ def frame(*, engine_ready: bool, theme: str) -> dmc.MantineProvider:
                 className="foot",
             ),
         ],
-        id=Id.THEME, forceColorScheme=theme,
+        id=Id.THEME, forceColorScheme="dark" if theme == "dark" else "light",
         theme={"fontFamily": FONT, "defaultRadius": 2, "primaryColor": "dark", "respectReducedMotion": True},
     )  # fmt: skip
 
@@ -66,7 +67,7 @@ def _title_block() -> html.Div:
             html.Span("Pullward", className="maker"),
             _cell("study", html.H1("no study yet", id=Id.TITLE)),
             _cell("variant", dmc.Select(id=Id.VARIANT, data=["as written"], value="as written", size="xs",
-                                        allowDeselect=False, **{"aria-label": "Variant"})),
+                                        allowDeselect=False, **attributes(aria_label="Variant"))),
             _cell("state", html.Span("opening", id=Id.STATE_LINE, role="status")),
         ],
         className="title-block",
@@ -88,5 +89,5 @@ def _tools(theme: str) -> html.Div:
             export("Download study", "toml:study"),
             tool("Light" if theme == "dark" else "Dark", Id.THEME_SWITCH),
         ],
-        className="tools", role="group", **{"aria-label": "Tools"},
+        className="tools", role="group", **attributes(aria_label="Tools"),
     )  # fmt: skip

@@ -8,7 +8,7 @@ from dash.exceptions import PreventUpdate
 
 from ergo.board.guard import work_key
 from ergo.board.ids import Id
-from ergo.board.judge import Superseded
+from ergo.board.judge import SupersededError
 from ergo.board.room import Room
 from ergo.board.store import Work
 from ergo.errors import PullwardError
@@ -36,7 +36,7 @@ def results_of(room: Room, work: Work, variant: str | None, tab: str) -> Results
         raise PreventUpdate
     try:
         return room.judge.ask(f"{work.key}:{tab}", as_variant(draft.good, variant)).wait()
-    except Superseded as error:
+    except SupersededError as error:
         raise PreventUpdate from error
 
 

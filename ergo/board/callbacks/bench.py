@@ -10,7 +10,7 @@ from ergo.board import drawings
 from ergo.board.callbacks.answers import as_variant
 from ergo.board.guard import work_key
 from ergo.board.ids import Id
-from ergo.board.judge import Superseded, question_key
+from ergo.board.judge import SupersededError, question_key
 from ergo.board.layouts import ratings
 from ergo.board.room import Room
 from ergo.errors import PullwardError
@@ -42,7 +42,7 @@ def register(app: Dash, room: Room) -> None:
         question = room.judge.ask(f"{work.key}:{tab}", study, quick=more or phase == "drag")
         try:
             results = question.wait()
-        except Superseded as error:
+        except SupersededError as error:
             raise PreventUpdate from error
         except (PullwardError, TimeoutError) as error:
             return no_update, refusal(str(error))

@@ -1,6 +1,5 @@
 """The frame: which page is shown, opening a study, theme, engine's state."""
 
-from pathlib import Path
 from typing import Any
 
 from dash import Dash, Input, Output, State, html, no_update
@@ -9,7 +8,7 @@ from ergo.board import layouts
 from ergo.board.callbacks.values import state_of
 from ergo.board.guard import work_key
 from ergo.board.ids import Id
-from ergo.board.opening import in_folder, shipped
+from ergo.board.opening import in_folder, open_file, shipped
 from ergo.board.room import Room
 from ergo.board.store import Work
 
@@ -28,6 +27,9 @@ def register(app: Dash, room: Room) -> None:
     )
     def page(path: str, tab: str) -> tuple[Any, Any]:
         work = room.store.work(work_key())
+        if room.first is not None and work.key not in room.greeted:
+            room.greeted.add(work.key)
+            open_file(work, room.first, tab)
         return page_of(path, work, room), _state(work, tab)
 
     @app.callback(

@@ -2,6 +2,7 @@
 
 from dash import dcc, html
 
+from ergo.board.attributes import attributes
 from ergo.board.draft import Draft
 from ergo.board.ids import Id
 from ergo.board.layouts import values
@@ -17,12 +18,12 @@ def page(draft: Draft) -> html.Div:
                     html.Div(id=Id.VALUES_PROBLEMS, className="problems", role="status"),
                     html.Div(values.drawer(draft), id=Id.VALUES),
                 ],
-                className="drawer", **{"aria-label": "Values of the study"},
+                className="drawer", **attributes(aria_label="Values of the study"),
             ),
             html.Div([_picture(), _chart()], className="middle"),
             html.Section(
                 html.P("The ratings are being worked out.", className="waiting"),
-                id=Id.RATINGS, className="ratings", **{"aria-label": "Ratings", "aria-live": "polite"},
+                id=Id.RATINGS, className="ratings", **attributes(aria_label="Ratings", aria_live="polite"),
             ),
             dcc.Store(id=Id.DRAWN),
             dcc.Store(id=Id.PEOPLE_DRAWN),
@@ -43,7 +44,7 @@ def _picture() -> html.Section:
                     _tab("space", "In space"),
                     html.Span("Drag a dimension to change it.", className="hint"),
                 ],
-                className="views", role="group", **{"aria-label": "View"},
+                className="views", role="group", **attributes(aria_label="View"),
             ),
             html.Div(
                 [
@@ -58,12 +59,12 @@ def _picture() -> html.Section:
                 className="sheet show-machine", id=Id.SHEET,
             ),
         ],
-        className="picture", **{"aria-label": "Bench drawing"},
+        className="picture", **attributes(aria_label="Bench drawing"),
     )  # fmt: skip
 
 
 def _tab(name: str, text: str, *, chosen: bool = False) -> html.Button:
-    return html.Button(text, className="view", **{"data-view": name, "aria-pressed": "true" if chosen else "false"})
+    return html.Button(text, className="view", **attributes(data_view=name, aria_pressed="true" if chosen else "false"))
 
 
 def _chart() -> html.Section:
@@ -71,7 +72,7 @@ def _chart() -> html.Section:
         [
             html.Figure(id=Id.CHART_PICTURE, className="drawn chart"),
             html.P("Move over the chart, or focus it and press the arrow keys, to read the stroke.",
-                   id=Id.POINTER_SAYS, className="readout"),  # fmt: skip
+                   id=Id.POINTER_SAYS, className="readout"),
         ],
-        className="stroke", **{"aria-label": "Stroke chart"},
-    )  # fmt: skip
+        className="stroke", **attributes(aria_label="Stroke chart"),
+    )

@@ -5,6 +5,7 @@ from typing import Any
 
 from dash import html
 
+from ergo.board.attributes import attributes
 from ergo.board.ids import Part, of
 from ergo.pictures.sheet import Drawing
 
@@ -13,7 +14,7 @@ def figure(drawing: Drawing, name: str, *, wide: bool = False) -> html.Section:
     """Return a drawing with its title, its twin and buttons that export it."""
     return html.Section(
         [
-            html.Figure(className="drawn", **{"data-svg": drawing.svg}),
+            html.Figure(className="drawn", **attributes(data_svg=drawing.svg)),
             html.Div(
                 [
                     html.Details([html.Summary("The same as a table"), table(drawing.columns, drawing.rows)]),
@@ -23,22 +24,22 @@ def figure(drawing: Drawing, name: str, *, wide: bool = False) -> html.Section:
                 className="figure-foot",
             ),
         ],
-        className="figure wide" if wide else "figure", **{"aria-label": drawing.title},
+        className="figure wide" if wide else "figure", **attributes(aria_label=drawing.title),
     )  # fmt: skip
 
 
 def export(text: str, path: str, what: str = "") -> html.Button:
     """Return a button that takes something away."""
-    extra = {"aria-label": f"{text}, {what}"} if what else {}
+    extra = attributes(aria_label=f"{text}, {what}") if what else {}
     return html.Button(text, id=of(Part.EXPORT, path), n_clicks=0, className="quiet", **extra)
 
 
 def table(columns: Sequence[str], rows: Iterable[Sequence[Any]], *, caption: str = "", numbers: Sequence[int] = ()
           ) -> html.Div:  # fmt: skip
     """Return a plain table; `numbers` are the columns set to the right."""
-    right = {n: "number" for n in numbers}
+    right = dict.fromkeys(numbers, "number")
     head = html.Thead(html.Tr([html.Th(c, scope="col", className=right.get(n, "")) for n, c in enumerate(columns)]))
     body = html.Tbody([html.Tr([html.Td(c, className=right.get(n, "")) for n, c in enumerate(row)]) for row in rows])
     top = [html.Caption(caption)] if caption else []
     return html.Div(html.Table([*top, head, body]), className="table", tabIndex="0", role="region",
-                    **{"aria-label": caption or f"Table of {columns[0] if columns else 'values'}"})  # fmt: skip
+                    **attributes(aria_label=caption or f"Table of {columns[0] if columns else 'values'}"))  # fmt: skip

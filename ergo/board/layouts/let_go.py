@@ -7,6 +7,7 @@ import numpy as np
 from dash import html
 
 from ergo.board import drawings
+from ergo.board.attributes import attributes
 from ergo.board.layouts.figures import figure, table
 from ergo.evaluation.results import Results
 from ergo.pictures.sheet import quantity
@@ -21,7 +22,7 @@ def body(results: Results) -> list[Any]:
         return [
             html.H2("No let-go is judged in this study."),
             html.P("Set the stroke position at which the load suddenly lets go: Load, lets go at, on the Bench page.",
-                   className="lead"),  # fmt: skip
+                   className="lead"),
         ]
     rating = results.ratings.get("let_go")
     return [
@@ -65,6 +66,6 @@ def _body_share(results: Results, where: Any) -> html.Section:
     ]
     return html.Section(
         [html.H3(f"The body, let go at {100 * s.stroke[p]:.0f}\u202f% of the stroke"),
-         html.Div(parts, className="shares", **{"aria-hidden": "true"}), html.Ul(words, className="share-words")],
+         html.Div(parts, className="shares", **attributes(aria_hidden="true")), html.Ul(words, className="share-words")],
         className="figure",
     )  # fmt: skip

@@ -5,6 +5,7 @@ from typing import Any
 import numpy as np
 from dash import html
 
+from ergo.board.attributes import attributes
 from ergo.evaluation.results import Results
 from ergo.pictures.ratings_view import interval, label, ordered
 from ergo.pictures.sheet import figure
@@ -45,7 +46,7 @@ def _row(results: Results, name: str) -> html.Details:
     return html.Details(
         [summary, html.P("; ".join(facts) + ".", className="facts"),
          html.A("Sources and their status", href="/sources", className="facts")],
-        className=f"rating{short}", **{"data-rating": name, "data-value": f"{r.value:.6g}"},
+        className=f"rating{short}", **attributes(data_rating=name, data_value=f"{r.value:.6g}"),
     )  # fmt: skip
 
 
@@ -58,7 +59,7 @@ def _bar(rating: Any) -> html.Span:
         parts.append(html.Span(className="whisker", style={"left": f"{low:.2f}%", "width": f"{high - low:.2f}%"}))
     if np.isfinite(rating.target):
         parts.append(html.Span(className="tick", style={"left": f"{_clip(rating.target):.2f}%"}))
-    return html.Span(parts, className="bar", **{"aria-hidden": "true"})
+    return html.Span(parts, className="bar", **attributes(aria_hidden="true"))
 
 
 def _clip(value: float) -> float:

@@ -25,7 +25,7 @@ def page(name: str, *, folder: bool, report: bool) -> html.Div:
             html.H2("Take away"),
             html.Div([_study(name, folder), _report(report), _rows("Drawings", DRAWINGS, ("svg", "png")),
                       _rows("Tables", TABLES, ("csv",), export("All tables as XLSX", "xlsx:all"),
-                            export("Results as JSON", "json:results"))], className="figures"),  # fmt: skip
+                            export("Results as JSON", "json:results"))], className="figures"),
             html.Div(id=Id.EXPORT_SAYS, role="status", className="problems"),
         ],
         className="page",
@@ -38,7 +38,7 @@ def _study(name: str, folder: bool) -> html.Section:
         parts += [
             html.Label("File name in the folder", htmlFor=str(Id.SAVE_NAME)),
             html.Div([dcc.Input(id=Id.SAVE_NAME, value=name, type="text", maxLength=80),
-                      html.Button("Save into the folder", id=Id.SAVE, n_clicks=0)], className="row"),  # fmt: skip
+                      html.Button("Save into the folder", id=Id.SAVE, n_clicks=0)], className="row"),
             html.P(id=Id.SAVE_SAYS, role="status"),
         ]
     else:

@@ -4,6 +4,7 @@ from typing import Any
 
 from dash import html
 
+from ergo.board.attributes import attributes
 from ergo.board.controls import KIND_KEY, LISTS, SECTIONS, control_paths, field, kind_choice
 from ergo.board.draft import Draft, problems_by_field
 from ergo.board.ids import Part, of
@@ -45,7 +46,8 @@ def _section(section: str, title: str, data: dict[str, Any], told: dict[str, str
     body: list[Any] = []
     if section in LISTS:
         body += [_entry(section, n, data, told) for n in range(len(_parts(data, section)))]
-        body.append(_button(f"Add a {section.removesuffix('s').replace('_', ' ')}", Part.ADD, section))
+        if section != "variants":
+            body.append(_button(f"Add a {section.removesuffix('s').replace('_', ' ')}", Part.ADD, section))
     elif section in data:
         body += _fields(section, data, told)
         if section in OPTIONAL:
@@ -55,7 +57,7 @@ def _section(section: str, title: str, data: dict[str, Any], told: dict[str, str
     summary = [html.Span(title), html.Span(_gist(section, data), className="gist")]
     return html.Details(
         [html.Summary(summary), html.Div(body, className="fields")],
-        open=section in OPEN_AT_FIRST, className="section", **{"data-section": section},
+        open=section in OPEN_AT_FIRST, className="section", **attributes(data_section=section),
     )  # fmt: skip
 
 
@@ -87,9 +89,12 @@ def _fields(section: str, data: dict[str, Any], told: dict[str, str], place: str
 
 def _entry(section: str, n: int, data: dict[str, Any], told: dict[str, str]) -> html.Fieldset:
     place = f"{section}[{n}]"
-    name = str(_parts(data, section)[n].get("name", "")) or f"number {n + 1}"
+    part = _parts(data, section)[n]
+    name = str(part.get("name", "")) or f"number {n + 1}"
+    changes = part.get("set", {})
+    lines = [html.Li(f"{key} = {value}") for key, value in changes.items()] if isinstance(changes, dict) else []
     return html.Fieldset(
-        [html.Legend(name), *_fields(section, data, told, place), _button(f"Take out {name}", Part.REMOVE, place)],
+        [html.Legend(name), *_fields(section, data, told, place), html.Ul(lines, className="changes"), _button(f"Take out {name}", Part.REMOVE, place)],
         className="entry",
     )
 
