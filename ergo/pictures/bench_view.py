@@ -37,7 +37,8 @@ from ergo.pictures.theme import Ink
 
 Array = NDArray[np.float64]
 WIDTH = 680.0
-NAME_ROOM = 22.0
+# Room over the first view, between the two (the first one's dimensions lie there), and under the second.
+ABOVE, BETWEEN, BELOW = 54.0, 92.0, 44.0
 
 
 @dataclass(frozen=True)
@@ -113,22 +114,23 @@ def machine_drawing(results: Results, ink: Ink = theme.LIGHT, *, layers: Layers 
     extents = [Extent.of(view, *points) for view in views]
     wide = max(e.size[0] for e in extents)
     tall = sum(e.size[1] for e in extents)
-    margin = (150.0, 110.0) if layers.dimensions else (60.0, 60.0)
-    room = (width - 2.0 * margin[0], height - 2.0 * margin[1] - 2.0 * NAME_ROOM)
+    side = 132.0 if layers.dimensions else 60.0
+    footer = 52.0 if layers.ribbon else 0.0
+    around = ABOVE + BETWEEN + BELOW + footer
+    room = (width - 2.0 * side, height - around)
     one_to = scale_for((max(wide, 1.0), max(tall, 1.0)), room)
     per_mm = theme.UNITS_PER_PAPER_MM / one_to
-    footer = 34.0 if layers.ribbon else 0.0
-    used = tall * per_mm + 2.0 * margin[1] + 2.0 * NAME_ROOM + footer
+    used = tall * per_mm + around
     sheet = Sheet(width, used, ink, name="machine")
     low = min(e.low[0] for e in extents)
     high = max(e.high[0] for e in extents)
     left = (width - (high - low) * per_mm) / 2.0
-    top = NAME_ROOM + margin[1] * 0.55
+    top = ABOVE
     for n, (view, extent) in enumerate(zip(views, extents, strict=True)):
         same = Extent((low, extent.low[1]), (high, extent.high[1]))
         frame = laid(view, same, one_to, left, top)
         _one_view(sheet, frame, results, same, layers, first=n == 0)
-        top += extent.size[1] * per_mm + NAME_ROOM + margin[1] * 0.9
+        top += extent.size[1] * per_mm + BETWEEN
     if layers.ribbon:
         draw_force_scale(sheet, results, (22.0, used - 8.0))
     title = f"Bench, lever and handle path, {scale_name(one_to)}"
@@ -178,15 +180,20 @@ def _names(sheet: Sheet, frame: Frame, results: Results, *, ends: bool) -> None:
 
 
 def _end_names(sheet: Sheet, frame: Frame, results: Results) -> None:
+    """Name both ends of the stroke, with the lever angle that the study sets there."""
     ends = frame.at(results.stroke.handle_mm[[0, -1]])
     middle = frame.at(np.mean(results.stroke.handle_mm, axis=0))
     radius = results.study["grip"]["diameter_mm"] / 2.0 * frame.units_per_mm
-    for at, text in zip(ends, ("start", "end"), strict=True):
+    lever = results.study.get("lever")
+    for at, name in zip(ends, ("start", "end"), strict=True):
         way = at - middle
         way = way / np.linalg.norm(way) if np.linalg.norm(way) > 1.0 else np.array([0.0, -1.0])
         place = at + (radius + 14.0) * way
         anchor = "start" if way[0] > 0.3 else ("end" if way[0] < -0.3 else "middle")
-        sheet.words(place + [0.0, 3.5], text, size=theme.SMALL, anchor=anchor, halo=True)
+        text = f"{name} {figure(lever[f'{name}_deg'])}°" if lever else name
+        sheet.open("dimension", key=f"lever.{name}_deg")
+        sheet.words(place + [0.0, 3.5], text, anchor=anchor, halo=True)
+        sheet.close()
 
 
 def _sheet_angle(frame: Frame, direction: Array) -> float:
@@ -200,7 +207,8 @@ def _true_dimensions(sheet: Sheet, frame: Frame, results: Results, extent: Exten
     pivot = frame.at(made["pivot"])
     end = frame.at(made["end"][0])
     centroid = frame.at(made["end"]).mean(axis=0)
-    side = float(np.sign(np.cross(end - pivot, centroid - pivot))) or 1.0
+    lever_way, path_way = end - pivot, centroid - pivot
+    side = float(np.sign(lever_way[0] * path_way[1] - lever_way[1] * path_way[0])) or 1.0
     length_dimension(sheet, pivot, end, f"length {figure(lever['length_mm'])}", away=side * 34.0, key="lever.length_mm")
     axis = pivot_axis(lever["axis"])
     zero = _sheet_angle(frame, zero_direction(axis))
@@ -208,11 +216,11 @@ def _true_dimensions(sheet: Sheet, frame: Frame, results: Results, extent: Exten
     reach = float(np.linalg.norm(end - pivot))
     zero_way = np.array([np.cos(zero), -np.sin(zero)])
     sheet.line([pivot, pivot + 0.58 * reach * zero_way], stroke=sheet.ink.grey, dash=theme.CENTRE_DASH)
-    for share, angle, key, name in ((0.36, lever["start_deg"], "lever.start_deg", "start"),
-                                    (0.52, lever["end_deg"], "lever.end_deg", "end")):  # fmt: skip
-        if abs(angle) > 0.5:
-            angle_dimension(sheet, pivot, zero, zero + turn * np.radians(angle), share * reach,
-                            f"{name} {figure(angle)}°", key=key)  # fmt: skip
+    # The angles stand in words at the ends of the stroke, where there is room; the arcs show what they count from.
+    for share, name in ((0.36, "start"), (0.52, "end")):
+        angle = np.radians(lever[f"{name}_deg"])
+        if abs(angle) > 0.01:
+            angle_dimension(sheet, pivot, zero, zero + turn * angle, share * reach, "", key=f"lever.{name}_deg")
     _pivot_dimensions(sheet, frame, results, pivot, extent)
     _linkage_dimensions(sheet, frame, results)
 

@@ -76,6 +76,9 @@ def angle_dimension(sheet: Sheet, centre: ArrayLike, start_rad: float, end_rad: 
     sheet.line(arc, stroke=ink)
     for tip, near in ((arc[-1], arc[-2]),) if abs(end_rad - start_rad) * radius > 2.0 * ARROW else ():
         _arrow(sheet, tip, (tip - near) / np.linalg.norm(tip - near), ink)
+    if not text:
+        sheet.close()
+        return
     # A narrow angle has no room for words between its legs; they go beside its first leg.
     middle = (start_rad + end_rad) / 2.0
     if abs(end_rad - start_rad) < 0.35:

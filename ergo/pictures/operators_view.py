@@ -61,6 +61,7 @@ def operators_drawing(results: Results, position: int | None = None, ink: Ink = 
 
 def _people_extent(results: Results, view: View, position: int) -> Extent:
     rows = [np.asarray(results.stroke.handle_mm)]
+    tallest = max([p.stature_mm for p in results.persons], default=1800.0) + 60.0
     for person in results.persons[:3]:
         rows += [np.asarray(p)[position][None] for p in person.points_mm.values()]
         feet = np.asarray(person.points_mm["foot"])[position]
@@ -70,7 +71,7 @@ def _people_extent(results: Results, view: View, position: int) -> Extent:
         rows.append(zone_corners(zone, rows[0]))
     for line in (results.details.get("reach_lines_mm") or {}).values():
         curve = np.asarray(line, dtype=float).reshape(-1, 3)
-        rows.append(curve[_over_bench(curve, results)])
+        rows.append(curve[_over_bench(curve, results) & (curve[:, 2] <= tallest)])
     known = [r[np.isfinite(r).all(axis=1)] for r in rows]
     return Extent.of(view, *[r for r in known if len(r)]).grown(60.0, 30.0, 60.0, 30.0)
 

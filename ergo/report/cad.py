@@ -3,7 +3,8 @@
 import io
 import json
 import struct
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
+from contextlib import contextmanager
 from typing import Any
 
 import numpy as np
@@ -102,8 +103,12 @@ def glb(solids: Mapping[str, Array]) -> bytes:
 
 def path_dxf(results: Results) -> bytes:
     """Return handle path, lever, linkage, zones and reach lines as 3D DXF in station coordinates."""
-    doc = _new_document()
-    space = doc.modelspace()
+    with _document() as doc:
+        _draw_path(doc.modelspace(), results)
+        return _written(doc)
+
+
+def _draw_path(space: Any, results: Results) -> None:
     space.add_polyline3d(_tuples(results.stroke.handle_mm), dxfattribs={"layer": "HANDLE_PATH"})
     made = lever_points(results)
     for position in key_positions(results):
@@ -119,27 +124,30 @@ def path_dxf(results: Results) -> bytes:
     for rows in (results.details.get("reach_lines_mm") or {}).values():
         space.add_polyline3d(_tuples(rows), dxfattribs={"layer": "REACH"})
     _note(space, results, (0.0, -300.0, 0.0))
-    return _written(doc)
 
 
 def elevation_dxf(results: Results) -> bytes:
     """Return the side elevation as flat DXF: X of the drawing is station y, Y of the drawing is station z."""
-    doc = _new_document()
-    space = doc.modelspace()
+    with _document() as doc:
+        _draw_elevation(doc.modelspace(), results)
+        return _written(doc)
 
-    def flat(points: Any) -> list[tuple[float, float]]:
-        return [(float(p[1]), float(p[2])) for p in np.asarray(points, dtype=float).reshape(-1, 3)]
 
-    space.add_lwpolyline(flat(results.stroke.handle_mm), dxfattribs={"layer": "HANDLE_PATH"})
+def _flat(points: Any) -> list[tuple[float, float]]:
+    return [(float(p[1]), float(p[2])) for p in np.asarray(points, dtype=float).reshape(-1, 3)]
+
+
+def _draw_elevation(space: Any, results: Results) -> None:
+    space.add_lwpolyline(_flat(results.stroke.handle_mm), dxfattribs={"layer": "HANDLE_PATH"})
     made = lever_points(results)
     radius = results.study["grip"]["diameter_mm"] / 2.0
     for position in key_positions(results):
-        space.add_circle(flat(made["grip"][position])[0], radius, dxfattribs={"layer": "LEVER"})
+        space.add_circle(_flat(made["grip"][position])[0], radius, dxfattribs={"layer": "LEVER"})
         if "pivot" in made:
-            space.add_lwpolyline(flat([made["pivot"], made["end"][position]]), dxfattribs={"layer": "LEVER"})
+            space.add_lwpolyline(_flat([made["pivot"], made["end"][position]]), dxfattribs={"layer": "LEVER"})
         chain = _chain(results, position)
         if len(chain) > 1:
-            space.add_lwpolyline(flat(chain), dxfattribs={"layer": "LINKAGE"})
+            space.add_lwpolyline(_flat(chain), dxfattribs={"layer": "LINKAGE"})
     bench = results.study["bench"]
     top, under = bench["surface_height_mm"], bench["surface_height_mm"] - bench["edge_thickness_mm"]
     far = max(600.0, float(np.max(results.stroke.handle_mm[:, 1])) + 100.0)
@@ -148,9 +156,8 @@ def elevation_dxf(results: Results) -> bytes:
     space.add_line((-900.0, 0.0), (far, 0.0), dxfattribs={"layer": "BENCH"})
     for zone in results.study.get("zones", ()):
         for line in _zone_wires(zone):
-            space.add_lwpolyline(flat(line), dxfattribs={"layer": "ZONES"})
+            space.add_lwpolyline(_flat(line), dxfattribs={"layer": "ZONES"})
     _note(space, results, (-900.0, -60.0, 0.0))
-    return _written(doc)
 
 
 def _chain(results: Results, position: int) -> list[Array]:
@@ -185,15 +192,23 @@ def _tuples(points: Any) -> list[tuple[float, float, float]]:
     return [(float(x), float(y), float(z)) for x, y, z in np.asarray(points, dtype=float).reshape(-1, 3)]
 
 
-def _new_document() -> Any:
+@contextmanager
+def _document() -> Iterator[Any]:
+    """Give a new document in millimetres, with the time and the name of its making left out."""
     import ezdxf
 
-    doc = ezdxf.new("R2010", setup=False)  # type: ignore[attr-defined]
-    doc.header["$INSUNITS"] = MILLIMETRES
-    doc.header["$MEASUREMENT"] = 1
-    for name, colour in LAYERS.items():
-        doc.layers.add(name, color=colour)
-    return doc
+    option = ezdxf.options  # type: ignore[attr-defined]
+    before = option.write_fixed_meta_data_for_testing
+    option.write_fixed_meta_data_for_testing = True
+    try:
+        doc = ezdxf.new("R2010", setup=False)  # type: ignore[attr-defined]
+        doc.header["$INSUNITS"] = MILLIMETRES
+        doc.header["$MEASUREMENT"] = 1
+        for name, colour in LAYERS.items():
+            doc.layers.add(name, color=colour)
+        yield doc
+    finally:
+        option.write_fixed_meta_data_for_testing = before
 
 
 def _note(space: Any, results: Results, at: tuple[float, float, float]) -> None:
@@ -204,15 +219,6 @@ def _note(space: Any, results: Results, at: tuple[float, float, float]) -> None:
 
 
 def _written(doc: Any) -> bytes:
-    """Return a DXF document without the time and the name of its making."""
-    import ezdxf
-
-    option = ezdxf.options  # type: ignore[attr-defined]
-    before = option.write_fixed_meta_data_for_testing
-    option.write_fixed_meta_data_for_testing = True
-    try:
-        out = io.StringIO()
-        doc.write(out)
-    finally:
-        option.write_fixed_meta_data_for_testing = before
+    out = io.StringIO()
+    doc.write(out)
     return out.getvalue().encode("utf-8")

@@ -28,15 +28,24 @@ TABLES = {
     "twist": ("letgo_twist", "grip_"),
     "served": ("",),
 }
+# Headings of the argument: as the rating meets its target, and as it falls short.
 RATED_HEADS = {
-    "reach": "The handle can be reached",
-    "direction": "The working stroke is a pull",
-    "force": "The needed force can be given",
-    "posture": "The posture is one that can be kept up",
-    "clearance": "Hand and forearm stay clear",
-    "let_go": "A let-go can be survived on one's feet",
-    "served": "The lever serves the people it is meant for",
+    "reach": ("The handle can be reached", "Too many do not reach the handle"),
+    "direction": ("The working stroke is a pull where it has to be", "The working stroke is not the pull it has to be"),
+    "force": ("The needed force can be given", "Too many cannot give the needed force"),
+    "posture": ("The posture can be kept up", "The posture cannot be kept up"),
+    "clearance": ("Hand and forearm stay clear", "Hand or forearm come too near"),
+    "let_go": ("A let-go leaves people on their feet and unhurt", "A let-go is not safe for enough people"),
+    "served": ("The lever serves the people it is meant for", "The lever leaves out too many people"),
 }
+
+
+def heading(results: Results, name: str) -> str:
+    """Return the heading of a rated claim, which never says more than the rating."""
+    rating = results.ratings.get(name)
+    if rating is None:
+        return f"{label(name).capitalize()} was not rated"
+    return RATED_HEADS[name][0 if rating.met else 1]
 
 
 def backing(results: Results, claim: str) -> tuple[tuple[str, str], ...]:
@@ -50,18 +59,21 @@ def backing(results: Results, claim: str) -> tuple[tuple[str, str], ...]:
     return tuple((key, weakest(found)) for key, found in sorted(statuses.items()))
 
 
-def argument(results: Results) -> list[tuple[str, list[Claim | Words]]]:
-    """Return the claims in the order of the argument, under their headings."""
-    found: list[tuple[str, list[Claim | Words]]] = []
-    found += [(RATED_HEADS[name], [rated(results, name)]) for name in ("reach", "direction")]
-    found.append((RATED_HEADS["force"], [rated(results, "force"), *opinions(results)]))
-    found.append(("The job repeats", repetition(results)))
-    found += [(RATED_HEADS[name], [rated(results, name)]) for name in ("posture", "clearance")]
-    found.append((RATED_HEADS["let_go"], let_go(results)))
-    found.append(("The hand still feels the tool", feel(results)))
-    found.append(("The strongest operator does not break it", strong_end(results)))
-    found.append((RATED_HEADS["served"], [rated(results, "served")]))
-    return [(title, rows) for title, rows in found if rows]
+def argument(results: Results) -> list[tuple[str, str, list[Claim | Words]]]:
+    """Return the claims in the order of the argument: name, heading, claims."""
+    steps: list[tuple[str, str, list[Claim | Words]]] = [
+        ("reach", heading(results, "reach"), [rated(results, "reach")]),
+        ("direction", heading(results, "direction"), [rated(results, "direction")]),
+        ("force", heading(results, "force"), [rated(results, "force"), *opinions(results)]),
+        ("repetition", "What repetition leaves of the strength", repetition(results)),
+        ("posture", heading(results, "posture"), [rated(results, "posture")]),
+        ("clearance", heading(results, "clearance"), [rated(results, "clearance")]),
+        ("let_go", heading(results, "let_go"), let_go(results)),
+        ("feel", "What the hand feels of the tool", feel(results)),
+        ("strong end", "What the strongest operator puts on the lever", strong_end(results)),
+        ("served", heading(results, "served"), [rated(results, "served")]),
+    ]
+    return [step for step in steps if step[2]]
 
 
 def rated(results: Results, name: str) -> Claim | Words:
@@ -215,11 +227,6 @@ def _strong_backing(results: Results) -> str:
     force = {key for key, _ in backing(results, "force")}
     own = [f"{key} ({status})" for key, status in backing(results, "strong end") if key not in force]
     return "; ".join(["the strengths behind the force rating", *([", ".join(own)] if own else [])])
-
-
-def unique_sources(results: Results) -> list[str]:
-    """Return every source key that a number of the results names, sorted."""
-    return sorted({row["source"] for row in results.sources})
 
 
 def listed(claim: Claim) -> str:

@@ -34,7 +34,8 @@ def drawable() -> frozenset[int]:
     for place in font_folders():
         for path in sorted(folder("assets").glob("*/fonts/*.ttf")):
             if str(path.parent) == place:
-                found |= set(TTFont(path, lazy=True).getBestCmap() or {})
+                with TTFont(path, lazy=True) as face:
+                    found |= set(face.getBestCmap() or {})
     return frozenset(found)
 
 

@@ -47,7 +47,7 @@ def report(results: Results, drawings: Drawings, against: Sequence[Results] = ()
     variant = f"Variant: {plain(results.variant, LONGEST_TITLE)}" if results.variant else ""
     sections = (
         Section("Purpose and scope", _purpose(results)),
-        Section("Who the operators are", _people(results, drawings)),
+        Section("Who the operators are", _people(results, drawings), fresh_page=True),
         Section("The machine", _machine(results, drawings), fresh_page=True),
         Section("The handle path", _path(results, drawings)),
         Section("The argument", _argument(results, drawings)),
@@ -80,10 +80,8 @@ def _opening(results: Results, drawings: Drawings) -> tuple[Block, ...]:
     short = [results.ratings[n] for n in ordered(results) if not results.ratings[n].met]
     found: list[Block] = [Words(text) for text in results.reasons[1:4]]
     if short:
-        lines = tuple(
-            f"{label(r.name)}: {figure(r.value, 1)} of 100, target {figure(r.target, 1)}. {r.reason}" for r in short
-        )
-        found = [Words("Below target:", strong=True), Points(lines), *found]
+        lines = "; ".join(f"{label(r.name)} {figure(r.value, 1)} of 100, target {figure(r.target, 1)}" for r in short)
+        found = [Words(f"Below target: {lines}.", strong=True), *found]
     caption = (
         "Ratings, 0 to 100: bar to the value, tick at the target, whisker for the 95 % interval. A solid square marks a "
         "rating below its target."
@@ -145,12 +143,12 @@ def _argument(results: Results, drawings: Drawings) -> tuple[Block, ...]:
         Words("Each claim below stands with its number, the interval it lies in, its target, and the sources it rests on with "
               "the weakest status among their numbers.")
     ]  # fmt: skip
-    for title, claims in argument(results):
+    for name, title, claims in argument(results):
         found.append(Words(title, strong=True))
         found += claims
-        if title.startswith("The needed force"):
+        if name == "force":
             found.append(Picture(drawings.stroke, STROKE_CAPTION))
-        if title.startswith("The lever serves"):
+        if name == "served":
             found.append(
                 Picture(drawings.people, "One dot an operator drawn; hollow are served, marked ones are left out.")
             )

@@ -32,8 +32,8 @@ class Drawings:
 def draw_all(results: Results, ink: Ink = theme.PRINT) -> Drawings:
     """Return the drawings of a report."""
     return Drawings(
-        machine=machine_drawing(results, ink, height=700.0),
-        operators=operators_drawing(results, ink=ink, height=690.0, inked=-1),
+        machine=machine_drawing(results, ink, height=860.0),
+        operators=operators_drawing(results, ink=ink, height=650.0, inked=-1),
         stroke=stroke_drawing(results, ink),
         people=people_drawing(results, ink, height=300.0),
         strip=strip_drawing(results, ink),

@@ -72,7 +72,7 @@ def people_blocks(results: Results) -> list[Words | Points]:
     if name not in table_keys():
         return [first, Words("The table is the user's own file; what it covers is for its maker to say.")]
     table = library().table(name)
-    number, status = table.meta.get("n", "number of people not stated"), table.meta.get("status", "by row")
+    number, status = table.meta.get("n") or "number of people not stated", table.meta.get("status") or "by row"
     about = f"The table: {table.title}; {number}; status {status}."
     gaps = tuple(table.caveats) or ("no gaps are stated with the table",)
     return [first, Words(about), Words("What the table does not cover:"), Points(gaps)]

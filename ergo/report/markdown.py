@@ -5,12 +5,22 @@ import re
 from ergo.report.blocks import Block, Claim, Picture, Points, Report, Rows, Words
 from ergo.report.claims import listed
 
-_MARKUP = re.compile(r"([\\`*_{}\[\]()<>#+\-.!|~$&^=:@])")
+_ALWAYS = re.compile(r"([\\`*\[\]<>|~$&^@])|(?<!\w)(_)|(_)(?!\w)")
+_AT_START = re.compile(r"^(\s*)([#+\-=]|\d+(?=[.)]))")
+_LINKS = re.compile(r"(?i)(:)(?=//)|(?<=www)(\.)")
 
 
 def literal(text: str) -> str:
-    """Return text in which no character is markup."""
-    return _MARKUP.sub(r"\\\1", " ".join(text.split("\n")))
+    """Return text in which no character is markup, escaping no more than that needs."""
+    one_line = " ".join(text.split("\n"))
+    quoted = _ALWAYS.sub(lambda m: "\\" + m.group(0), one_line)
+    quoted = _LINKS.sub(lambda m: "\\" + m.group(0), quoted)
+    start = _AT_START.match(quoted)
+    if start is None:
+        return quoted
+    head, mark = start.groups()
+    rest = quoted[start.end() :]
+    return f"{head}\\{mark}{rest}" if not mark.isdigit() else f"{head}{mark}\\{rest}"
 
 
 def page(made: Report, version: str, drawings_at: str | None = None) -> bytes:

@@ -1,5 +1,6 @@
 """Check a bundle: do its files still say what its study gives?"""
 
+import hashlib
 import json
 import zipfile
 from collections.abc import Callable
@@ -93,7 +94,9 @@ def verify(place: str | Path, tell: Tell = lambda share, what: None) -> Finding:
         wanted = _made_again(found, tell)
     except (StudyError, KeyError) as error:
         return Finding(False, len(found), (f"{STUDY}: {str(error).splitlines()[0]}",), made_with)
-    differences = [*_differences(found, wanted)]
+    named = _differences(found, wanted)
+    seen = {line.split(":")[0] for line in named}
+    differences = [*(line for line in _changed_since(found) if line.split(":")[0] not in seen), *named]
     if differences and made_with != __version__:
         differences.append(
             f"made with pullward {made_with}, checked with {__version__}: another version may differ throughout"
@@ -133,6 +136,18 @@ def _made_again(found: dict[str, bytes], tell: Tell) -> dict[str, bytes]:
 def evaluated(study: Study, variant: str) -> Results:
     """Return the results of a study, or of one of its variants; KeyError for a variant that it does not have."""
     return evaluate(study.variant(variant) if variant else study)
+
+
+def _changed_since(found: dict[str, bytes]) -> list[str]:
+    """Return the files that are no longer those whose checksums the bundle states."""
+    stated = dict(
+        line.split("  ", 1)[::-1] for line in found[CHECKSUMS].decode(errors="replace").splitlines() if "  " in line
+    )
+    return [
+        f"{name}: is not the file that {CHECKSUMS} states"
+        for name in sorted(stated.keys() & found.keys())
+        if hashlib.sha256(found[name]).hexdigest() != stated[name]
+    ]
 
 
 def _differences(found: dict[str, bytes], wanted: dict[str, bytes]) -> list[str]:
