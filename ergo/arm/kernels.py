@@ -7,6 +7,7 @@ All functions that call one another stay in this file: numba's cache follows one
 
 import math
 
+from ergo.arm import compiled  # noqa: F401, I001  (sets numba's cache folder, so it comes first)
 from numba import njit
 
 # Columns of the operator array (n, OPERATOR_COLUMNS): body, then strengths.

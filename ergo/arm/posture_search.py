@@ -19,6 +19,7 @@ from ergo.arm.kernels import (
 
 COM_STEPS, BEND_STEPS, SWIVEL_STEPS = 4, 5, 15
 TOUCHING_GAP = 0.03  # m: a body this near the bench edge leans on it when braced
+FINE = 0.01  # a search to smaller steps than this also looks at every swivel
 NEVER = 1e9  # discomfort of a posture that does not carry what is needed
 # Compass directions in units of (com share, bend): the best posture often sits on a ridge where two limits meet.
 COMPASS = np.array([[1, 0], [-1, 0], [0, 1], [0, -1], [1, 1], [-1, -1], [1, -1], [-1, 1]], dtype=np.float64)
@@ -79,8 +80,11 @@ def prepare(op, scene, limits, stand_x, stand_y, target, com_share, bend):
 
 
 @bare
-def best_swivel(op, shape, scene, limits, place, body, target, start, goal):
-    """Largest force of the arm over its swivel: (force, swivel, limit); left as soon as it gives `goal`."""
+def best_swivel(op, shape, scene, limits, place, body, target, start, goal, wide):
+    """Largest force of the arm over its swivel: (force, swivel, limit); left as soon as it gives `goal`.
+
+    With `wide` the whole window is looked at first, else only the neighbourhood of `start`.
+    """
     ball = scene[BALL] > 0.0
     best, code, _ = judge_arm(
         op, shape, limits, ball, place, body, target, math.cos(start), math.sin(start), NO_LIMIT, -1
@@ -89,16 +93,17 @@ def best_swivel(op, shape, scene, limits, place, body, target, start, goal):
     if best >= goal:
         return best, at, code
     step = (scene[SWIVEL_HIGH] - scene[SWIVEL_LOW]) / (SWIVEL_STEPS - 1)
-    turn_c, turn_s = math.cos(step), math.sin(step)
-    c, s = math.cos(scene[SWIVEL_LOW]), math.sin(scene[SWIVEL_LOW])
-    for k in range(SWIVEL_STEPS):
-        force, limit, _ = judge_arm(op, shape, limits, ball, place, body, target, c, s, NO_LIMIT, -1)
-        if force > best:
-            best, at, code = force, scene[SWIVEL_LOW] + k * step, limit
-            if best >= goal:
-                return best, at, code
-        c, s = c * turn_c - s * turn_s, s * turn_c + c * turn_s
-    for _ in range(7):
+    if wide or best < 0.0:
+        turn_c, turn_s = math.cos(step), math.sin(step)
+        c, s = math.cos(scene[SWIVEL_LOW]), math.sin(scene[SWIVEL_LOW])
+        for k in range(SWIVEL_STEPS):
+            force, limit, _ = judge_arm(op, shape, limits, ball, place, body, target, c, s, NO_LIMIT, -1)
+            if force > best:
+                best, at, code = force, scene[SWIVEL_LOW] + k * step, limit
+                if best >= goal:
+                    return best, at, code
+            c, s = c * turn_c - s * turn_s, s * turn_c + c * turn_s
+    while step > 0.006:
         step *= 0.5
         middle = at
         for side in (-1.0, 1.0):
@@ -110,11 +115,12 @@ def best_swivel(op, shape, scene, limits, place, body, target, start, goal):
                 best, at, code = force, swivel, limit
                 if best >= goal:
                     return best, at, code
+                break
     return best, at, code
 
 
 @bare
-def try_posture(op, shape, scene, limits, stand_x, stand_y, target, seen, com_share, bend):
+def try_posture(op, shape, scene, limits, stand_x, stand_y, target, seen, com_share, bend, wide):
     """Judge a centre-of-mass place and a bend with their best swivel; keep them in `seen` (5,) if better.
 
     `seen` is com share, bend, swivel, force (below 0: how far from getting there), limit. Returns whether it was.
@@ -128,7 +134,7 @@ def try_posture(op, shape, scene, limits, stand_x, stand_y, target, seen, com_sh
     if value >= 0.0:
         if ceiling <= seen[3]:
             return False
-        value, swivel, arm_code = best_swivel(op, shape, scene, limits, place, body, target, swivel, ceiling)
+        value, swivel, arm_code = best_swivel(op, shape, scene, limits, place, body, target, swivel, ceiling, wide)
         code = arm_code
         if value >= ceiling:
             value, code = ceiling, first
@@ -141,48 +147,78 @@ def try_posture(op, shape, scene, limits, stand_x, stand_y, target, seen, com_sh
 
 
 @bare
-def look_from(op, shape, scene, limits, stand_x, stand_y, target, seen, step, smallest, enough):
-    """Strongest posture near the one in `seen` (5,): compass with halving steps and a bold step along each gain."""
-    com_share, bend = seen[0], seen[1]
-    seen[3] = -1e6
-    try_posture(op, shape, scene, limits, stand_x, stand_y, target, seen, com_share, bend)
-    span = scene[BEND_MAX] - scene[BEND_MIN]
-    seated = scene[SEATED] > 0.0
-    while step > smallest and seen[3] < enough:
-        was_share, was_bend = seen[0], seen[1]
-        moved = False
-        for n in range(8):
-            if (n >= 4 and moved) or (seated and COMPASS[n, 0] != 0.0):
-                continue
-            if try_posture(
-                op, shape, scene, limits, stand_x, stand_y, target, seen, seen[0] + step * COMPASS[n, 0],
-                seen[1] + step * span * COMPASS[n, 1],
+def along_bend(op, shape, scene, limits, stand_x, stand_y, target, line, bend, step, smallest, enough):
+    """Best place of the centre of mass for one bend, from the place in `line` (5,), by steps that halve."""
+    share = line[0]
+    line[3] = -1e6
+    try_posture(op, shape, scene, limits, stand_x, stand_y, target, line, share, bend, smallest < FINE)
+    if scene[SEATED] > 0.0:
+        return
+    while step > smallest and line[3] < enough:
+        middle, moved = line[0], False
+        for side in (-1.0, 1.0):
+            share = min(max(middle + side * step, 0.0), 1.0)
+            if share != middle and try_posture(
+                op, shape, scene, limits, stand_x, stand_y, target, line, share, bend, smallest < FINE
             ):  # fmt: skip
                 moved = True
-                if seen[3] >= enough:
-                    return
-        if moved:
-            try_posture(
-                op, shape, scene, limits, stand_x, stand_y, target, seen, 2.0 * seen[0] - was_share,
-                2.0 * seen[1] - was_bend,
-            )  # fmt: skip
-        else:
+        if not moved:
+            step *= 0.5
+
+
+@bare
+def look_from(op, shape, scene, limits, stand_x, stand_y, target, seen, step, smallest, enough):
+    """Strongest posture near the one in `seen` (5,): bends by halving steps, the best place for each bend.
+
+    Where two limits meet, the best place moves along with the bend; searching it for each bend follows that ridge.
+    """
+    line = seen.copy()
+    along_bend(op, shape, scene, limits, stand_x, stand_y, target, line, seen[1], step, smallest, enough)
+    seen[:] = line
+    span = scene[BEND_MAX] - scene[BEND_MIN]
+    while step > smallest and seen[3] < enough:
+        middle, moved = seen[1], False
+        for side in (-1.0, 1.0):
+            bend = min(max(middle + side * step * span, scene[BEND_MIN]), scene[BEND_MAX])
+            if bend == middle:
+                continue
+            line[:] = seen
+            along_bend(op, shape, scene, limits, stand_x, stand_y, target, line, bend, step, smallest, enough)
+            if line[3] > seen[3] + 1e-4 * abs(seen[3]):
+                seen[:], moved = line, True
+        if not moved:
             step *= 0.5
 
 
 @bare
 def look_everywhere(op, shape, scene, limits, stand_x, stand_y, target, seen, smallest, enough):
-    """Strongest posture of all: a coarse grid of centre-of-mass places and bends, then the compass."""
-    seen[3] = -1e6
+    """Strongest posture of all: a coarse look at each of a few bends, then `look_from` the best two of them."""
     steps = 1 if scene[SEATED] > 0.0 else COM_STEPS
-    for i in range(steps):
-        for j in range(BEND_STEPS):
-            bend = scene[BEND_MIN] + j * (scene[BEND_MAX] - scene[BEND_MIN]) / (BEND_STEPS - 1)
-            try_posture(op, shape, scene, limits, stand_x, stand_y, target, seen, i / (COM_STEPS - 1), bend)
-            if seen[3] >= enough:
-                return
-    if smallest < 0.2:
-        look_from(op, shape, scene, limits, stand_x, stand_y, target, seen, 0.16, smallest, enough)
+    lines = np.zeros((BEND_STEPS, 5))
+    first, second = 0, -1
+    for j in range(BEND_STEPS):
+        line = lines[j]
+        line[2], line[3] = seen[2], -1e6
+        bend = scene[BEND_MIN] + j * (scene[BEND_MAX] - scene[BEND_MIN]) / (BEND_STEPS - 1)
+        for i in range(steps):
+            try_posture(op, shape, scene, limits, stand_x, stand_y, target, line, i / (COM_STEPS - 1), bend, True)
+        if line[3] >= enough:
+            seen[:] = line
+            return
+        if line[3] > lines[first, 3]:
+            first = j
+    for j in range(BEND_STEPS):
+        if abs(j - first) > 1 and (second < 0 or lines[j, 3] > lines[second, 3]):
+            second = j
+    seen[:] = lines[first]
+    if smallest > 0.2:
+        return
+    look_from(op, shape, scene, limits, stand_x, stand_y, target, seen, 0.16, smallest, enough)
+    if seen[3] < enough and second >= 0 and lines[second, 3] > 0.6 * seen[3]:
+        other = lines[second]
+        look_from(op, shape, scene, limits, stand_x, stand_y, target, other, 0.16, smallest, enough)
+        if other[3] > seen[3]:
+            seen[:] = other
 
 
 @bare

@@ -73,7 +73,7 @@ def best_stance(op, shape, scene, limits, window, targets, weights, visit, found
         climb_stance(op, shape, scene, limits, window, targets, weights, visit, found, row, 0.1, 0.03, 0.04)
         if row[0] > final[0]:
             final[:] = row
-    climb_stance(op, shape, scene, limits, window, targets, weights, visit, found, final, 0.03, 0.003, 0.01)
+    climb_stance(op, shape, scene, limits, window, targets, weights, visit, found, final, 0.03, 0.003, 0.004)
     stance[0], stance[1] = final[1], final[2]
     return final[0]
 
@@ -110,7 +110,7 @@ def follow_strongest(op, shape, scene, limits, stance, targets, found):
     trial = np.zeros(5)
     for p in range(count):
         if p % FULL_LOOK_EVERY == 0 or p == count - 1:
-            look_everywhere(op, shape, scene, limits, stance[0], stance[1], targets[p], found[p], 0.01, NO_LIMIT)
+            look_everywhere(op, shape, scene, limits, stance[0], stance[1], targets[p], found[p], 0.004, NO_LIMIT)
     for p in range(count):
         if p % FULL_LOOK_EVERY == 0 or p == count - 1:
             continue
@@ -118,11 +118,11 @@ def follow_strongest(op, shape, scene, limits, stance, targets, found):
         after = min(p + FULL_LOOK_EVERY - p % FULL_LOOK_EVERY, count - 1)
         for start in (p - 1, after):
             trial[:] = found[start]
-            look_from(op, shape, scene, limits, stance[0], stance[1], targets[p], trial, 0.04, 0.01, NO_LIMIT)
+            look_from(op, shape, scene, limits, stance[0], stance[1], targets[p], trial, 0.04, 0.004, NO_LIMIT)
             if trial[3] > found[p, 3]:
                 found[p, :] = trial
         if found[p, 3] < 0.0:
-            look_everywhere(op, shape, scene, limits, stance[0], stance[1], targets[p], found[p], 0.01, NO_LIMIT)
+            look_everywhere(op, shape, scene, limits, stance[0], stance[1], targets[p], found[p], 0.004, NO_LIMIT)
 
 
 @bare
