@@ -199,10 +199,9 @@
 
   board.drew = function (drawn) {
     if (!drawn) return skip();
-    place("bench-picture", drawn.machine);
-    place("chart-picture", drawn.chart);
-    putPeople(drawn);
     board.drawn = drawn;
+    lay();
+    putPeople(drawn);
     board.people = {};
     if (board.position === null || board.position >= drawn.readout.length) board.position = drawn.position;
     rule();
@@ -210,11 +209,7 @@
     clearTimeout(board.timer);
     board.busy = false;
     if (board.held) { flush(); return skip(); }
-    if (!board.unheard.length && drawn.change >= board.change) {
-      stale(false);
-      say(drawn.more ? drawn.said + ", the rest is coming" : drawn.said);
-      if (drawn.more && !board.dragging) setProps("edit", { data: { edits: [], phase: "full", seen: board.change } });
-    }
+    if (!board.unheard.length && drawn.change >= board.change) fresh(drawn);
     return skip();
   };
 
@@ -222,6 +217,34 @@
     const box = byId(id);
     if (box && svg !== undefined && svg !== null) box.innerHTML = svg;
   }
+
+  /* Pictures and ratings come together: nothing is un-greyed before both are there. */
+  function fresh(drawn) {
+    if (board.drawn !== drawn || board.unheard.length) return;
+    const there = document.querySelector("#ratings [data-key]");
+    if (!there || there.dataset.key !== drawn.key) { requestAnimationFrame(() => fresh(drawn)); return; }
+    stale(false);
+    say(drawn.more ? drawn.said + ", the rest is coming" : drawn.said);
+    if (drawn.more && !board.dragging) setProps("edit", { data: { edits: [], phase: "full", seen: board.change } });
+  }
+
+  /* On a narrow screen the true view has the width to itself, and the view beside it comes below. */
+  const narrow = window.matchMedia("(max-width: 700px)");
+  function lay() {
+    const drawn = board.drawn;
+    if (!drawn) return;
+    place("bench-picture", drawn.machine);
+    place("beside-picture", narrow.matches ? drawn.machine : "");
+    if (narrow.matches) {
+      const [all, beside] = [document.querySelector("#bench-picture svg"), document.querySelector("#beside-picture svg")];
+      if (all) all.setAttribute("viewBox", drawn.cells[0].join(" "));
+      if (beside) beside.setAttribute("viewBox", drawn.cells[1].join(" "));
+    }
+    const [chart, left, right] = drawn.charts[narrow.matches ? "narrow" : "wide"];
+    place("chart-picture", chart);
+    drawn.span = [left, right];
+  }
+  narrow.addEventListener("change", () => { lay(); rule(); grips(); });
 
   function putPeople(drawn) {
     place("people-picture", drawn.operators);
@@ -454,7 +477,7 @@
   /* Drawings inside pages arrive as text on their element. */
   new MutationObserver(() => {
     document.querySelectorAll("[data-svg]").forEach((box) => {
-      box.innerHTML = box.getAttribute("data-svg");
+      box.innerHTML = box.getAttribute(narrow.matches && box.hasAttribute("data-narrow") ? "data-narrow" : "data-svg");
       box.removeAttribute("data-svg");
     });
     follow();
@@ -559,6 +582,7 @@
       drew: (drawn) => board.drew(drawn),
       peopleDrew: (drawn) => board.peopleDrew(drawn),
       theme: (clicks, now) => board.theme(clicks, now),
+      said: (text) => { if (text) say(text); return skip(); },
       raster: (sent) => board.raster(sent),
       variant: (name) => board.variant(name),
     },

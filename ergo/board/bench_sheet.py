@@ -41,12 +41,13 @@ SHORTEST_MM = 1.0
 
 @dataclass(frozen=True)
 class BenchSheet:
-    """The drawing, where the grip lies on it in each view (views, P, 2), and its millimetres a unit."""
+    """The drawing, where the grip lies on it in each view (views, P, 2), its millimetres a unit, and its two halves."""
 
     svg: str
     marks: tuple[tuple[tuple[float, float], ...], ...]
     mm_per_unit: float
     words: str
+    cells: tuple[tuple[float, ...], ...] = ((0.0, 0.0, 408.0, HEIGHT), (404.0, 6.0, 252.0, 150.0))
 
 
 def bench_sheet(results: Results, ink: Ink) -> BenchSheet:
@@ -194,7 +195,7 @@ def _pivot_dimensions(sheet: Sheet, frame: Frame, results: Results, pivot: Array
         if abs(across) >= SHORTEST_MM:
             length_dimension(sheet, foot, level, f"{figure(across)} {name}", away=-way * below, key=f"lever.pivot_mm[{axis}]")
         if abs(z - height) >= SHORTEST_MM:
-            far = TRUE_CELL[0] + TRUE_CELL[2] - 30.0
+            far = TRUE_CELL[0] + TRUE_CELL[2] - 58.0
             length_dimension(sheet, [far, float(level[1])], [far, float(pivot[1])], f"{figure(z - height)} over bench",
                              away=-0.01, key="lever.pivot_mm[2]")  # fmt: skip
     elif abs(y) >= SHORTEST_MM:

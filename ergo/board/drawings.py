@@ -8,6 +8,8 @@ from ergo.pictures import bench_view, left_out_view, operators_view, ratings_vie
 from ergo.pictures.sheet import Drawing
 from ergo.pictures.theme import Ink
 
+# Sheets for a wide screen and for one held in the hand; words keep their size on both.
+WIDE, NARROW = 560.0, 380.0
 BANDS = ("var(--band-1)", "var(--band-2)", "var(--band-3)")
 
 
@@ -31,19 +33,19 @@ def corner(results: Results, position: int) -> str:
     return operators_corner(results, position, PAGE)
 
 
-def machine(results: Results, ink: Ink = PAGE) -> Drawing:
-    """Return the dimensioned views on a sheet of their own, to take away."""
-    return bench_view.machine_drawing(results, ink)
+def machine(results: Results, width: float = WIDE) -> Drawing:
+    """Return the dimensioned views on a sheet of their own."""
+    return bench_view.machine_drawing(results, PAGE, width=width)
 
 
 def operators(results: Results, position: int | None, ink: Ink = PAGE) -> Drawing:
     """Return three operators at the lever at one stroke position."""
-    return operators_view.operators_drawing(results, position, ink)
+    return operators_view.operators_drawing(results, position, ink, width=640.0, height=430.0)
 
 
-def stroke(results: Results, ink: Ink = PAGE, *, width: float = 640.0, height: float = 240.0) -> Drawing:
+def stroke(results: Results, *, width: float = 640.0, height: float = 240.0) -> Drawing:
     """Return the stroke chart: needed and allowed force."""
-    return stroke_view.stroke_drawing(results, ink, width=width, height=height)
+    return stroke_view.stroke_drawing(results, PAGE, width=width, height=height)
 
 
 def stroke_span(drawing: Drawing) -> tuple[float, float]:
@@ -51,14 +53,14 @@ def stroke_span(drawing: Drawing) -> tuple[float, float]:
     return stroke_view.LEFT, drawing.width - stroke_view.RIGHT
 
 
-def left_out(results: Results, ink: Ink = PAGE) -> Drawing:
+def left_out(results: Results, width: float = WIDE) -> Drawing:
     """Return a dot a person, served or lost, by stature and strength."""
-    return left_out_view.people_drawing(results, ink)
+    return left_out_view.people_drawing(results, PAGE, width=width)
 
 
-def left_out_strip(results: Results, ink: Ink = PAGE) -> Drawing:
+def left_out_strip(results: Results, width: float = WIDE) -> Drawing:
     """Return the share lost along the stroke, stacked by limit."""
-    return left_out_view.strip_drawing(results, ink)
+    return left_out_view.strip_drawing(results, PAGE, width=width, height=230.0)
 
 
 def named(name: str, results: Results) -> Drawing:

@@ -37,6 +37,8 @@ def frame(*, engine_ready: bool, theme: str) -> dmc.MantineProvider:
             dcc.Store(id=Id.ARRIVED),
             dcc.Store(id=Id.HEARD),
             dcc.Store(id=Id.RASTER),
+            dcc.Store(id=Id.KEPT_CHANGED),
+            dcc.Store(id=Id.SAID),
             dcc.Download(id=Id.DOWNLOAD),
             dcc.Interval(id=Id.ENGINE_TICK, interval=700, disabled=engine_ready),
             html.A("Skip to the page", href="#page", className="skip"),
@@ -86,6 +88,7 @@ def _tools(theme: str) -> html.Div:
         [
             tool("Undo", Id.UNDO, "Ctrl+Z"),
             tool("Redo", Id.REDO, "Ctrl+Y"),
+            tool("Keep", Id.KEEP_NOW, "Keep this placement to compare it with others"),
             export("Download study", "toml:study"),
             tool("Light" if theme == "dark" else "Dark", Id.THEME_SWITCH),
         ],

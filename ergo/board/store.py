@@ -42,6 +42,7 @@ class Kept:
     note: str
     name: str
     data: dict[str, Any]
+    summary: dict[str, Any]
 
 
 class OtherTabError(Exception):
@@ -58,6 +59,7 @@ class Work:
     at: int = -1
     change: int = 0
     kept: list[Kept] = field(default_factory=list)
+    reference: str = ""
     draft: Draft | None = None
     numbers: dict[str, int] = field(default_factory=dict)
     seen_by: dict[str, int] = field(default_factory=dict)
@@ -137,6 +139,7 @@ class Work:
             "at": self.at,
             "change": self.change,
             "kept": [vars(k) for k in self.kept],
+            "reference": self.reference,
         }
         self.place.mkdir(parents=True, exist_ok=True, mode=0o700)
         beside = self.place / f"work.{secrets.token_hex(4)}.part"
@@ -224,6 +227,7 @@ def _read(key: str, place: Path) -> Work:
     if not -1 <= at < len(steps):
         return work
     work.steps, work.kept, work.at, work.change = steps, kept, at, change
+    work.reference = str(content.get("reference", ""))
     if at >= 0:
         work.draft = _last_draft(work)
     return work

@@ -3,16 +3,17 @@
 from typing import Any
 
 import numpy as np
-from dash import Dash, Input, Output, State, html, no_update
+from dash import ALL, Dash, Input, Output, Patch, State, ctx, html, no_update
 from dash.exceptions import PreventUpdate
 
 from ergo.board import drawings
 from ergo.board.callbacks.answers import as_variant
 from ergo.board.guard import work_key
-from ergo.board.ids import Id
+from ergo.board.ids import Id, Part
 from ergo.board.judge import SupersededError, question_key
-from ergo.board.layouts import ratings
+from ergo.board.layouts import bench, ratings
 from ergo.board.room import Room
+from ergo.board.space import CAMERAS, space_figure
 from ergo.errors import PullwardError
 from ergo.evaluation.results import Results
 from ergo.pictures.sheet import quantity
@@ -47,7 +48,7 @@ def register(app: Dash, room: Room) -> None:
         except (PullwardError, TimeoutError) as error:
             return no_update, refusal(str(error))
         drawn = bundle(results, question.study, change, full=study.operators.count)
-        return {**drawn, "more": more}, ratings.strip(results)
+        return {**drawn, "more": more}, ratings.strip(results, drawn["key"])
 
     @app.callback(Output(Id.PEOPLE_DRAWN, "data"), Input(Id.POINTER, "data"), prevent_initial_call=True)
     def point(asked: dict[str, Any]) -> dict[str, Any]:
@@ -57,6 +58,35 @@ def register(app: Dash, room: Room) -> None:
         position = int(np.clip(int(asked.get("position", 0)), 0, results.stroke.stroke.size - 1))
         return {"key": asked["key"], "position": position, "svg": drawings.operators(results, position).svg,
                 "corner": drawings.corner(results, position)}  # fmt: skip
+
+    @app.callback(
+        Output(Id.SPACE_PICTURE, "children"),
+        Input(Id.VIEW, "data"),
+        Input(Id.DRAWN, "data"),
+        Input(Id.POINTER, "data"),
+        Input(Id.THEME, "forceColorScheme"),
+    )
+    def space(view: str, drawn: Any, pointer: Any, theme: str) -> Any:
+        results = room.judge.answer_to(str((drawn or {}).get("key", "")))
+        if view != "space" or results is None:
+            raise PreventUpdate
+        asked = pointer if pointer and pointer.get("key") == drawn["key"] else drawn
+        position = int(np.clip(int(asked.get("position", 0)), 0, results.stroke.stroke.size - 1))
+        return bench.space(space_figure(results, position, drawings.THEMES[theme]))
+
+    @app.callback(
+        Output(Id.SPACE_GRAPH, "figure"),
+        Input({"type": str(Part.CAMERA), "path": ALL}, "n_clicks"),
+        prevent_initial_call=True,
+    )
+    def look(clicks: list[int]) -> Any:
+        chosen = ctx.triggered_id
+        if not any(clicks) or not isinstance(chosen, dict) or chosen["path"] not in CAMERAS:
+            raise PreventUpdate
+        changed = Patch()
+        changed["layout"]["scene"]["camera"] = CAMERAS[chosen["path"]]
+        changed["layout"]["uirevision"] = f"{chosen['path']} {sum(clicks)}"
+        return changed
 
     for name, source in (("drew", Id.DRAWN), ("peopleDrew", Id.PEOPLE_DRAWN)):
         app.clientside_callback(
@@ -70,6 +100,7 @@ def register(app: Dash, room: Room) -> None:
 def bundle(results: Results, study: Study, change: int, *, full: int) -> dict[str, Any]:
     """Return the pictures and what the pointer needs to read them."""
     chart, machine = drawings.stroke(results), drawings.bench(results)
+    narrow = drawings.stroke(results, width=390.0, height=300.0)
     position = int(results.stroke.stroke.size // 2)
     count = study.operators.count
     said = f"{count} operators" if count >= full else f"{count} of {full} operators"
@@ -77,11 +108,11 @@ def bundle(results: Results, study: Study, change: int, *, full: int) -> dict[st
         "change": change,
         "key": question_key(study),
         "machine": machine.svg,
-        "chart": chart.svg,
+        "charts": {"wide": [chart.svg, *drawings.stroke_span(chart)], "narrow": [narrow.svg, *drawings.stroke_span(narrow)]},
         "operators": drawings.operators(results, position).svg,
         "corner": drawings.corner(results, position),
         "marks": machine.marks,
-        "span": drawings.stroke_span(chart),
+        "cells": machine.cells,
         "strokes": [round(float(s), 6) for s in results.stroke.stroke],
         "readout": [readout(results, p) for p in range(results.stroke.stroke.size)],
         "position": position,

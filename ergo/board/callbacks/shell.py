@@ -67,6 +67,8 @@ def page_of(path: str, work: Work, room: Room) -> Any:
         return layouts.opening.page(shipped(), in_folder(room.folder), empty=work.draft is None)
     if path == "/take-away":
         return layouts.take_away.page(work.name, folder=room.folder is not None, report=room.make_report is not None)
+    if path == "/placements":
+        return layouts.placements.page(work)
     if path in READ:
         return html.Div(html.Div(html.P("The engine is at it.", className="waiting"), id=READ[path]), className="page")
     return layouts.bench.page(work.draft)

@@ -1,11 +1,14 @@
 """The main page: the drawing, the chart under it, the ratings beside it, and the values."""
 
+from typing import Any
+
 from dash import dcc, html
 
 from ergo.board.attributes import attributes
 from ergo.board.draft import Draft
-from ergo.board.ids import Id
+from ergo.board.ids import Id, Part, of
 from ergo.board.layouts import values
+from ergo.board.space import CAMERAS
 
 
 def page(draft: Draft) -> html.Div:
@@ -50,6 +53,7 @@ def _picture() -> html.Section:
                 [
                     html.Div(
                         [html.Figure(id=Id.BENCH_PICTURE, className="drawn"),
+                         html.Figure(id=Id.BESIDE_PICTURE, className="drawn beside", **attributes(aria_hidden="true")),
                          html.Figure(id=Id.CORNER_PICTURE, className="drawn corner")],
                         className="view-machine",
                     ),
@@ -76,3 +80,15 @@ def _chart() -> html.Section:
         ],
         className="stroke", **attributes(aria_label="Stroke chart"),
     )
+
+
+def space(figure: dict[str, Any]) -> list[Any]:
+    """Return the scene with buttons for the keyboard, since the scene itself has none."""
+    buttons = [html.Button(name, id=of(Part.CAMERA, name), n_clicks=0, className="quiet") for name in CAMERAS]
+    return [
+        html.Div(buttons, className="cameras", role="group", **attributes(aria_label="Look")),
+        dcc.Graph(
+            id=Id.SPACE_GRAPH, figure=figure, className="space-graph", responsive=True,
+            config={"displayModeBar": False, "displaylogo": False, "showSendToCloud": False, "scrollZoom": True},
+        ),
+    ]  # fmt: skip

@@ -1,20 +1,23 @@
 """A drawing on a page, its text twin as a table, and the ways to take it away."""
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Callable, Iterable, Sequence
 from typing import Any
 
 from dash import html
 
+from ergo.board import drawings
 from ergo.board.attributes import attributes
 from ergo.board.ids import Part, of
+from ergo.evaluation.results import Results
 from ergo.pictures.sheet import Drawing
 
 
-def figure(drawing: Drawing, name: str, *, wide: bool = False) -> html.Section:
-    """Return a drawing with its title, its twin and buttons that export it."""
+def figure(draw: Callable[[Results, float], Drawing], results: Results, name: str) -> html.Section:
+    """Return a drawing for wide and for narrow screens, its twin, and buttons that export it."""
+    drawing, narrow = draw(results, drawings.WIDE), draw(results, drawings.NARROW)
     return html.Section(
         [
-            html.Figure(className="drawn", **attributes(data_svg=drawing.svg)),
+            html.Figure(className="drawn", **attributes(data_svg=drawing.svg, data_narrow=narrow.svg)),
             html.Div(
                 [
                     html.Details([html.Summary("The same as a table"), table(drawing.columns, drawing.rows)]),
@@ -24,7 +27,7 @@ def figure(drawing: Drawing, name: str, *, wide: bool = False) -> html.Section:
                 className="figure-foot",
             ),
         ],
-        className="figure wide" if wide else "figure", **attributes(aria_label=drawing.title),
+        className="figure", **attributes(aria_label=drawing.title),
     )  # fmt: skip
 
 

@@ -16,14 +16,15 @@ def body(results: Results) -> list[Any]:
     lost = ~crowd.served
     women, men = int((lost & crowd.women).sum()), int((lost & ~crowd.women).sum())
     count = crowd.served.size
-    head = f"{int(lost.sum())} of {count} operators are left out: {women} women and {men} men."
+    split = f"{women} {'woman' if women == 1 else 'women'} and {men} {'man' if men == 1 else 'men'}"
+    head = f"{int(lost.sum())} of {count} operators are left out: {split}."
     if not lost.any():
         head = f"All {count} operators are served."
     return [
         html.H2(head),
         html.P(_size_or_strength(results), className="lead"),
         html.Div(
-            [figure(drawings.left_out(results), "left_out"), figure(drawings.left_out_strip(results), "left_out_strip")],
+            [figure(drawings.left_out, results, "left_out"), figure(drawings.left_out_strip, results, "left_out_strip")],
             className="figures",
         ),
         html.P([export("People as CSV", "csv:people"), " ", export("Stroke as CSV", "csv:stroke")]),

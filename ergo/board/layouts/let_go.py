@@ -18,17 +18,16 @@ SHARES = ("kept", "one step", "thrown")
 def body(results: Results) -> list[Any]:
     """Return the page for results."""
     where = np.flatnonzero(np.isfinite(results.stroke.overrun_mm).any(axis=1))
-    if where.size == 0:
-        return [
-            html.H2("No let-go is judged in this study."),
-            html.P("Set the stroke position at which the load suddenly lets go: Load, lets go at, on the Bench page.",
-                   className="lead"),
-        ]
     rating = results.ratings.get("let_go")
+    if where.size == 0:
+        asked = results.study.get("load", {}).get("lets_go_at") is not None
+        hint = "Set the stroke position at which the load suddenly lets go: Load, lets go at, on the Bench page."
+        said = rating.reason if rating and asked else hint
+        return [html.H2("No let-go is judged in this study."), html.P(said, className="lead")]
     return [
         html.H2(rating.reason if rating else "The load lets go."),
         *[html.P(text, className="lead") for text in sentences(results.details.get("let_go", {}))],
-        html.Div([figure(drawings.machine(results), "machine"), _body_share(results, where)], className="figures"),
+        html.Div([figure(drawings.machine, results, "machine"), _body_share(results, where)], className="figures"),
         table(("at", "load", "handle runs on, P5", "P50", "P95", "toward", *SHARES, "smallest gap"),
               [_row(results, int(p)) for p in where], caption="Where the load may let go", numbers=range(1, 10)),
     ]  # fmt: skip

@@ -11,14 +11,18 @@ from ergo.pictures.ratings_view import interval, label, ordered
 from ergo.pictures.sheet import figure
 
 
-def strip(results: Results) -> list[Any]:
-    """Return the verdict and one row a rating; what falls short comes first, in bold, with a solid square."""
+def strip(results: Results, key: str) -> list[Any]:
+    """Return the verdict and one row a rating; what falls short comes first, in bold, with a solid square.
+
+    `key` tells the page which pictures these ratings belong to.
+    """
     head = "Meets every target" if results.meets else "Falls short"
     mark = "mark mark-met" if results.meets else "mark mark-short"
     people = results.people
     who = f"{people['count']} operators, {100 * float(people['women_share']):.0f}\u202f% women"
     return [
-        html.Div([html.Span(className=mark), html.H2(head), html.Span(who, className="who")], className="verdict"),
+        html.Div([html.Span(className=mark), html.H2(head), html.Span(who, className="who")], className="verdict",
+                 **attributes(data_key=key)),
         html.P(results.reasons[0] if results.reasons else "", className="verdict-why"),
         *[_row(results, name) for name in ordered(results)],
     ]

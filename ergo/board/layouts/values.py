@@ -94,7 +94,8 @@ def _entry(section: str, n: int, data: dict[str, Any], told: dict[str, str]) -> 
     changes = part.get("set", {})
     lines = [html.Li(f"{key} = {value}") for key, value in changes.items()] if isinstance(changes, dict) else []
     return html.Fieldset(
-        [html.Legend(name), *_fields(section, data, told, place), html.Ul(lines, className="changes"), _button(f"Take out {name}", Part.REMOVE, place)],
+        [html.Legend(name), *_fields(section, data, told, place), html.Ul(lines, className="changes"),
+         _button(f"Take out {name}", Part.REMOVE, place)],
         className="entry",
     )
 
