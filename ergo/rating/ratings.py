@@ -137,17 +137,18 @@ def clearance(gap_m: Array, zone: NDArray[np.int64], zone_names: tuple[str, ...]
 
 
 def let_go(safe: Flags, low_safe: Flags, high_safe: Flags, women: Flags, stroke_at: float, cause: str, sentence: str, *,
-           served_share: float) -> Rating:  # fmt: skip
+           served_share: float, counts: bool = True) -> Rating:  # fmt: skip
     """Rate let-go: the share of operators who keep their footing and whose hand meets nothing that hurts.
 
     `safe` (n,) at the middle of the parameter ranges; `low_safe`, `high_safe` (n,) at their worst and best ends,
-    which widen the interval.
+    which widen the interval. Where the load is not said to let go (`counts` false) the target is met whatever the
+    share.
     """
     share, low, high = share_interval(safe, women)
     low = min(low, share_interval(low_safe, women)[0])
     high = max(high, share_interval(high_safe, women)[0])
-    return Rating("let_go", 100 * share, 100 * low, 100 * high, 100 * served_share, share >= served_share, stroke_at,
-                  cause, sentence)  # fmt: skip
+    met = share >= served_share or not counts
+    return Rating("let_go", 100 * share, 100 * low, 100 * high, 100 * served_share, met, stroke_at, cause, sentence)  # fmt: skip
 
 
 def served(mask: Flags, women: Flags, worst_stroke: Array, cause: tuple[str, ...], *, served_share: float) -> Rating:

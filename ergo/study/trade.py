@@ -190,4 +190,5 @@ def letting_go(study: Study, load: Load, lever: Lever, linkage: Linkage) -> Load
     at = study.load.lets_go_at
     if at is None:
         return load
-    return LetsGo(load, float(slide_travel_m(lever, linkage, lever.angles_rad([at]))[0]))
+    # A nanometre more, so that the position at which it lets go still carries the load whatever the rounding.
+    return LetsGo(load, float(slide_travel_m(lever, linkage, lever.angles_rad([at]))[0]) + 1e-9)
