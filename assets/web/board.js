@@ -172,9 +172,20 @@
       flush();
     } else {
       document.documentElement.classList.remove("unsound");
+      caughtUp();
     }
     return skip();
   };
+
+  /* Pages without the bench drawing have caught up when what they show was made of the last change. */
+  function caughtUp() {
+    if (byId("bench-picture") || !document.documentElement.classList.contains("stale") || board.unheard.length) return;
+    const body = document.querySelector("[data-change]");
+    if (document.querySelector(".waiting") || (body && Number(body.dataset.change) < board.change)) return;
+    board.busy = false;
+    stale(false);
+    say("caught up");
+  }
 
   function tellProblems(state) {
     const before = board.problems || {};
@@ -482,6 +493,7 @@
     });
     follow();
     reopen();
+    caughtUp();
   }).observe(document.documentElement, { childList: true, subtree: true, attributes: true, attributeFilter: ["data-svg"] });
 
   /* A drawer that was built anew has the same sections open, and the focus where it was. */

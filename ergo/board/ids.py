@@ -35,6 +35,7 @@ class Id(StrEnum):
     CONFLICT_TAKE = "conflict-take"
     CONFLICT_KEEP = "conflict-keep"
     VALUES = "values"
+    VALUES_SHAPE = "values-shape"
     VALUES_PROBLEMS = "values-problems"
     BENCH_PICTURE = "bench-picture"
     PEOPLE_PICTURE = "people-picture"

@@ -6,6 +6,7 @@ from typing import Any
 from dash import Dash, Input, Output, State, html
 from dash.exceptions import PreventUpdate
 
+from ergo.board.attributes import attributes
 from ergo.board.guard import work_key
 from ergo.board.ids import Id
 from ergo.board.judge import SupersededError
@@ -46,9 +47,11 @@ def fill(app: Dash, room: Room, where: Id, body: Callable[[Results], list[Any]])
     @app.callback(
         Output(where, "children"), Input(Id.ARRIVED, "data"), Input(Id.VARIANT, "value"), State(Id.TAB, "data")
     )
-    def filled(_: Any, variant: str | None, tab: str) -> list[Any]:
+    def filled(_: Any, variant: str | None, tab: str) -> html.Div:
         work = room.store.work(work_key())
+        change = work.change
         try:
-            return body(results_of(room, work, variant, tab))
+            found = body(results_of(room, work, variant, tab))
         except (PullwardError, TimeoutError) as error:
-            return [html.H2("No results"), html.P(str(error))]
+            found = [html.H2("No results"), html.P(str(error))]
+        return html.Div(found, **attributes(data_change=change))

@@ -22,6 +22,14 @@ from ergo.study.model import Study
 
 def register(app: Dash, room: Room) -> None:
     """Make the main page work."""
+    _draw(app, room)
+    _point(app, room)
+    _space(app, room)
+    _place(app)
+
+
+def _draw(app: Dash, room: Room) -> None:
+    """Ask the engine and draw what it answers."""
 
     @app.callback(
         Output(Id.DRAWN, "data"),
@@ -50,6 +58,10 @@ def register(app: Dash, room: Room) -> None:
         drawn = bundle(results, question.study, change, full=study.operators.count)
         return {**drawn, "more": more}, ratings.strip(results, drawn["key"])
 
+
+def _point(app: Dash, room: Room) -> None:
+    """Draw the operators at the position under the pointer."""
+
     @app.callback(Output(Id.PEOPLE_DRAWN, "data"), Input(Id.POINTER, "data"), prevent_initial_call=True)
     def point(asked: dict[str, Any]) -> dict[str, Any]:
         results = room.judge.answer_to(str(asked.get("key", "")))
@@ -58,6 +70,10 @@ def register(app: Dash, room: Room) -> None:
         position = int(np.clip(int(asked.get("position", 0)), 0, results.stroke.stroke.size - 1))
         return {"key": asked["key"], "position": position, "svg": drawings.operators(results, position).svg,
                 "corner": drawings.corner(results, position)}  # fmt: skip
+
+
+def _space(app: Dash, room: Room) -> None:
+    """Show the scene in space, and look at it from where one likes."""
 
     @app.callback(
         Output(Id.SPACE_PICTURE, "children"),
@@ -87,6 +103,10 @@ def register(app: Dash, room: Room) -> None:
         changed["layout"]["scene"]["camera"] = CAMERAS[chosen["path"]]
         changed["layout"]["uirevision"] = f"{chosen['path']} {sum(clicks)}"
         return changed
+
+
+def _place(app: Dash) -> None:
+    """Let the page put the pictures in place."""
 
     for name, source in (("drew", Id.DRAWN), ("peopleDrew", Id.PEOPLE_DRAWN)):
         app.clientside_callback(

@@ -18,6 +18,14 @@ from ergo.errors import PullwardError
 
 def register(app: Dash, room: Room) -> None:
     """Make the page work."""
+    _keep_with_note(app, room)
+    _keep_now(app, room)
+    _act(app, room)
+    _list(app, room)
+
+
+def _keep_with_note(app: Dash, room: Room) -> None:
+    """Keep what stands in the fields, from the page, with a note."""
 
     @app.callback(
         Output(Id.KEEP_SAYS, "children"),
@@ -41,6 +49,10 @@ def register(app: Dash, room: Room) -> None:
             return f"Not kept: {error}", no_update, no_update
         made = keep(work, results, dict(results.study), str(note or "").strip())
         return f"Kept as {made.note or f'placement {len(work.kept)}'}.", "", made.key
+
+
+def _keep_now(app: Dash, room: Room) -> None:
+    """Keep what stands in the fields, from any page."""
 
     @app.callback(
         Output(Id.SAID, "data"),
@@ -68,6 +80,10 @@ def register(app: Dash, room: Room) -> None:
         Output(Id.HEARD, "data", allow_duplicate=True), Input(Id.SAID, "data"), prevent_initial_call=True,
     )  # fmt: skip
 
+
+def _act(app: Dash, room: Room) -> None:
+    """Put back, take out, compare against, write as a variant."""
+
     @app.callback(
         Output(Id.KEPT_CHANGED, "data", allow_duplicate=True),
         Output(Id.PLACE, "pathname", allow_duplicate=True),
@@ -87,6 +103,10 @@ def register(app: Dash, room: Room) -> None:
         except OtherTabError:
             return no_update, no_update, "Nothing was changed: another tab changed this study first. Reload to see it."
         return f"{kind}:{key}", "/" if kind == "back" else no_update, said
+
+
+def _list(app: Dash, room: Room) -> None:
+    """Let table and chart follow what is kept."""
 
     @app.callback(
         Output(Id.KEPT_TABLE, "children"),

@@ -22,6 +22,12 @@ FRAMES = {"stroke": Results.stroke_frame, "ratings": Results.ratings_frame, "peo
 
 def register(app: Dash, room: Room) -> None:
     """Make exports work on every page that offers them."""
+    _export(app, room)
+    _save(app, room)
+
+
+def _export(app: Dash, room: Room) -> None:
+    """Hand out drawings, tables and the study."""
 
     @app.callback(
         Output(Id.DOWNLOAD, "data"),
@@ -46,6 +52,10 @@ def register(app: Dash, room: Room) -> None:
             drawing = drawings.named(what, results)
             return no_update, {"svg": drawing.svg, "name": f"{stem}_{what}.png"}
         return exported(kind, what, results, stem), no_update
+
+
+def _save(app: Dash, room: Room) -> None:
+    """Save into the folder given."""
 
     @app.callback(
         Output(Id.SAVE_SAYS, "children"),

@@ -3,6 +3,7 @@
 from typing import Any
 
 from dash import ALL, Dash, Input, Output, State, no_update
+from dash.exceptions import PreventUpdate
 
 from ergo.board.controls import control_paths, field_values, read_value
 from ergo.board.draft import Draft, problems_by_field, value_at
@@ -21,29 +22,36 @@ def register(app: Dash, room: Room) -> None:
 
     @app.callback(
         Output(Id.ARRIVED, "data"),
-        Output(Id.VALUES, "children"),
-        Output(Id.VALUES_PROBLEMS, "children"),
         Output(Id.CONFLICT, "children"),
         Input(Id.EDIT, "data"),
         State(Id.TAB, "data"),
         prevent_initial_call=True,
     )
-    def edited(sent: dict[str, Any], tab: str) -> tuple[Any, Any, Any, Any]:
+    def edited(sent: dict[str, Any], tab: str) -> tuple[Any, Any]:
         work = room.store.work(work_key())
         with work.lock:
-            before = values.shape(work.draft) if work.draft else ""
             try:
-                state = apply_edits(work, sent, str(tab)[:32])
+                return apply_edits(work, sent, str(tab)[:32]), ""
             except OtherTabError:
                 refused = [e for e in _edits(sent) if e.get("do") == "set"]
-                state = {"n": _last_number(sent), "conflict": True, "refused": refused}
-                return state, no_update, no_update, notices.conflict()
-            draft = work.draft
-            if draft is None:
-                return no_update, no_update, no_update, ""
-            rebuilt = values.shape(draft) != before or any(e.get("do") in ("take", "keep") for e in _edits(sent))
-            drawer = values.drawer(draft) if rebuilt else no_update
-            return state, drawer, notices.problems(draft), ""
+                return {"n": _last_number(sent), "conflict": True, "refused": refused}, notices.conflict()
+
+    @app.callback(
+        Output(Id.VALUES, "children"),
+        Output(Id.VALUES_PROBLEMS, "children"),
+        Output(Id.VALUES_SHAPE, "data"),
+        Input(Id.ARRIVED, "data"),
+        State(Id.VALUES_SHAPE, "data"),
+        prevent_initial_call=True,
+    )
+    def drawer(_: Any, built: str) -> tuple[Any, Any, Any]:
+        draft = room.store.work(work_key()).draft
+        if draft is None:
+            raise PreventUpdate
+        shape = values.shape(draft)
+        if shape == built:
+            return no_update, notices.problems(draft), no_update
+        return values.drawer(draft), notices.problems(draft), shape
 
     arguments = [Input({"type": str(part), "path": ALL}, prop) for part, prop in
                  ((Part.VALUE, "value"), (Part.VALUE, "checked"), (Part.SLIDER, "value"))]  # fmt: skip

@@ -7,7 +7,7 @@ from dash import dcc, html
 from ergo.board.attributes import attributes
 from ergo.board.draft import Draft
 from ergo.board.ids import Id, Part, of
-from ergo.board.layouts import values
+from ergo.board.layouts import notices, values
 from ergo.board.space import CAMERAS
 
 
@@ -18,7 +18,8 @@ def page(draft: Draft) -> html.Div:
             html.Aside(
                 [
                     html.H2("Values", className="quiet-head"),
-                    html.Div(id=Id.VALUES_PROBLEMS, className="problems", role="status"),
+                    html.Div(notices.problems(draft), id=Id.VALUES_PROBLEMS, className="problems", role="status"),
+                    dcc.Store(id=Id.VALUES_SHAPE, data=values.shape(draft)),
                     html.Div(values.drawer(draft), id=Id.VALUES),
                 ],
                 className="drawer", **attributes(aria_label="Values of the study"),
