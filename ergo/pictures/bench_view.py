@@ -39,6 +39,8 @@ Array = NDArray[np.float64]
 WIDTH = 680.0
 # Room over the first view, between the two (the first one's dimensions lie there), and under the second.
 ABOVE, BETWEEN, BELOW = 54.0, 92.0, 44.0
+# The bench's middle line is drawn when it lies no further than this beside what the plan shows.
+BESIDE_MM = 30.0
 
 
 @dataclass(frozen=True)
@@ -273,13 +275,17 @@ def _other_dimensions(sheet: Sheet, frame: Frame, results: Results, extent: Exte
     """What the first view cannot show: the pivot's place across, and the grip beside the lever."""
     x, y, z = results.study["lever"]["pivot_mm"]
     pivot = frame.at(np.array([x, y, z]))
-    if frame.view is PLAN:
+    if frame.view is PLAN and extent.low[1] - BESIDE_MM <= 0.0 <= extent.high[1] + BESIDE_MM:
         middle = frame.at(np.array([0.0, y, z]))
         ends = frame.at(np.array([[0.0, -60.0, 0.0], [0.0, y + 160.0, 0.0]]))
         sheet.line(ends, stroke=sheet.ink.grey, dash=theme.CENTRE_DASH)
         sheet.words(ends[1] + [4.0, 3.5], "bench middle", size=theme.SMALL, fill=sheet.ink.grey, halo=True)
         if abs(x) > 0.5:
             length_dimension(sheet, middle, pivot, f"{figure(x)}", away=40.0, key="lever.pivot_mm")
+    elif frame.view is PLAN:
+        side = "right" if x > 0.0 else "left"
+        text = f"{figure(abs(x))} {side} of the bench middle"
+        leader(sheet, pivot, pivot + [70.0, 40.0], text, key="lever.pivot_mm")
     elif frame.view is PLAN_FRONT:
         edge = frame.at(np.array([x, 0.0, z]))
         if abs(y) > 0.5:

@@ -129,14 +129,15 @@ def _break(sheet: Sheet, stroke: Array, xy: Array, way: Array, across: Array, ha
     sheet.close()
 
 
+def let_go_position(results: Results, where: float) -> int:
+    """Return the last stroke position that is not past `where`: the load is still there."""
+    return int(np.flatnonzero(np.asarray(results.stroke.stroke) <= where + 1e-9)[-1])
+
+
 def overrun_at(results: Results, where: float) -> Array | None:
-    """Return P5, P50, P95 of the overrun [mm] at a stroke position, None where there is none."""
-    rows = np.asarray(results.stroke.overrun_mm, dtype=float)
-    known = np.isfinite(rows).all(axis=1)
-    if not known.any():
-        return None
-    nearest = np.flatnonzero(known)[np.argmin(np.abs(results.stroke.stroke[known] - where))]
-    return rows[nearest] if abs(results.stroke.stroke[nearest] - where) < 0.5 / (len(rows) - 1) + 1e-9 else None
+    """Return P5, P50, P95 of the overrun [mm] when the load lets go at `where`, None where there is none."""
+    row = np.asarray(results.stroke.overrun_mm, dtype=float)[let_go_position(results, where)]
+    return row if np.isfinite(row).all() else None
 
 
 def overrun_path(results: Results, where: float, travel_mm: float, count: int = 25) -> Array:

@@ -4,7 +4,7 @@ import numpy as np
 
 from ergo.evaluation.results import Results
 from ergo.pictures.ratings_view import label
-from ergo.pictures.ribbon import let_go_stroke, overrun_at
+from ergo.pictures.ribbon import let_go_position, let_go_stroke, overrun_at
 from ergo.pictures.sheet import figure, quantity
 from ergo.report.blocks import Claim, Words
 from ergo.sources import STATUSES, weakest
@@ -21,13 +21,15 @@ TABLES = {
     "standard": ("en_1005_3",),
     "repetition": ("repetition",),
     "posture": ("posture_bands", "joint_ranges"),
-    "clearance": (*_BODY, "posture_bands"),
+    "clearance": (*_BODY, "clearance_parameters"),
     "let_go": ("letgo_hand", "letgo_body", "letgo_bands", "body_contact", "segment_parameters"),
     "feel": ("letgo_feel",),
     "strong end": ("strong_end", "lever_materials", "metric_threads", *_STRENGTH),
     "twist": ("letgo_twist", "grip_"),
     "served": ("",),
 }
+AS_LET_GO = "the sources of the let-go rating above"
+NO_LET_GO = "The study names no position where the load lets go, so overrun and balance were not worked out."
 # Headings of the argument: as the rating meets its target, and as it falls short.
 RATED_HEADS = {
     "reach": ("The handle can be reached", "Too many do not reach the handle"),
@@ -43,7 +45,7 @@ RATED_HEADS = {
 def heading(results: Results, name: str) -> str:
     """Return the heading of a rated claim, which never says more than the rating."""
     rating = results.ratings.get(name)
-    if rating is None:
+    if rating is None or (name == "let_go" and not let_go_judged(results)):
         return f"{label(name).capitalize()} was not rated"
     return RATED_HEADS[name][0 if rating.met else 1]
 
@@ -71,6 +73,8 @@ def argument(results: Results) -> list[tuple[str, str, list[Claim | Words]]]:
         ("let_go", heading(results, "let_go"), let_go(results)),
         ("feel", "What the hand feels of the tool", feel(results)),
         ("strong end", "What the strongest operator puts on the lever", strong_end(results)),
+        ("twist", "Turning the grip to clamp", [Words(t) for t in said(results, "twist")]),
+        ("touch points", "Reaching the other controls", [Words(t) for t in said(results, "touch_points")]),
         ("served", heading(results, "served"), [rated(results, "served")]),
     ]
     return [step for step in steps if step[2]]
@@ -125,7 +129,7 @@ def opinions(results: Results) -> list[Claim | Words]:
 
 def _opinion(results: Results, key: str, name: str, claim: str, p: int, where: str) -> Claim | Words:
     values = np.asarray(getattr(results.stroke, key), dtype=float)
-    reason = results.stroke.not_covered.get(key, "the method gives no value here")
+    reason = why_not(results, key, "the method gives no value here")
     if not np.isfinite(values[p]):
         return Words(f"Force, {name}: not covered {where}: {reason}.")
     known = values[np.isfinite(values)]
@@ -145,6 +149,11 @@ def said(results: Results, key: str) -> list[str]:
     return list(detail.get("sentences", ())) if isinstance(detail, dict) else [str(s) for s in detail]
 
 
+def why_not(results: Results, key: str, otherwise: str) -> str:
+    """Return why a column of the stroke is not covered somewhere, in words that fit a sentence."""
+    return results.stroke.not_covered.get(key, otherwise).removeprefix("not covered: ")
+
+
 def repetition(results: Results) -> list[Claim | Words]:
     """Return what repetition and holding leave of the strength at the hardest position."""
     s, p, duty = results.stroke, hardest(results), results.study["duty"]
@@ -153,7 +162,7 @@ def repetition(results: Results) -> list[Claim | Words]:
         return []
     share = 100.0 * allowed / capable
     text = (
-        f"At {quantity(duty['strokes_per_minute'], 'strokes a minute', 1)} of {quantity(duty['stroke_s'], 's', 1)} for "
+        f"At {figure(duty['strokes_per_minute'], 1)} strokes a minute of {quantity(duty['stroke_s'], 's', 1)} for "
         f"{quantity(duty['hours_per_shift'], 'h', 1)} a shift, {quantity(share, '%')} of the single-effort strength may be used."
     )
     found: list[Claim | Words] = [
@@ -163,37 +172,54 @@ def repetition(results: Results) -> list[Claim | Words]:
     return found + [Words(t) for t in said(results, "repetition")]
 
 
-def let_go(results: Results) -> list[Claim | Words]:
-    """Return the let-go rating, with overrun and balance where the load lets go."""
-    found: list[Claim | Words] = [rated(results, "let_go")]
+def let_go_judged(results: Results) -> bool:
+    """Return whether a let-go was asked for and worked out: a rating without one says nothing."""
     at = let_go_stroke(results)
     if at is None:
-        return [*found, Words("The study names no position where the load lets go, so no overrun was worked out.")]
-    overrun = overrun_at(results, at)
-    p = int(np.argmin(np.abs(results.stroke.stroke - at)))
+        return False
+    balance = np.asarray(results.stroke.balance, dtype=float)[let_go_position(results, at)]
+    return overrun_at(results, at) is not None or bool(np.isfinite(balance).all())
+
+
+def let_go(results: Results) -> list[Claim | Words]:
+    """Return the let-go rating, with overrun and balance where the load lets go."""
+    at = let_go_stroke(results)
+    told = (
+        [t for t in said(results, "let_go") if t != results.ratings["let_go"].reason]
+        if "let_go" in results.ratings
+        else []
+    )
+    if at is None:
+        first = Words(
+            "The study names no position where the load lets go, so let-go is not rated. For orientation only:"
+        )
+        return [first, *(Words(t) for t in said(results, "let_go"))] if said(results, "let_go") else [Words(NO_LET_GO)]
+    if not let_go_judged(results):
+        reason = why_not(results, "overrun_mm", "the results hold no overrun and no balance there")
+        return [Words(f"The let-go at {quantity(100 * at, '%')} of the stroke is not covered: {reason}.")]
+    rests, p = backing(results, "let_go"), let_go_position(results, at)
+    found: list[Claim | Words] = [rated(results, "let_go")]
+    overrun, balance = overrun_at(results, at), np.asarray(results.stroke.balance, dtype=float)[p]
     if overrun is not None:
-        toward = next((t for t in (results.stroke.overrun_toward[p], *results.stroke.overrun_toward) if t), "")
+        toward = results.stroke.overrun_toward[p]
         text = (
-            f"When the load lets go at {quantity(100 * at, '%')} of the stroke the handle runs on by "
-            f"{quantity(overrun[1], 'mm')} in the middle case" + (f", {toward}." if toward else ".")
+            f"The handle runs on by {quantity(overrun[1], 'mm')} in the middle case{', ' + toward if toward else ''}."
         )
         spread = between(overrun[0], overrun[2], "mm", 0)
-        rests = backing(results, "let_go")
-        found.append(Claim("overrun", text, quantity(overrun[1], "mm"), spread, "none set", None, rests))
-    balance = np.asarray(results.stroke.balance, dtype=float)[p]
+        found.append(Claim("overrun", text, quantity(overrun[1], "mm"), spread, "none set", None, rests, AS_LET_GO))
     if np.isfinite(balance).all():
         kept, step, thrown = (quantity(100 * v, "%", 1) for v in balance)
         text = f"{kept} keep their feet in place, {step} take one step, {thrown} are thrown off their feet."
-        found.append(Claim("balance", text, kept, f"one step {step}, thrown {thrown}", "none set", None,
-                           backing(results, "let_go")))  # fmt: skip
-    return found + [Words(t) for t in said(results, "let_go")]
+        rest = f"one step {step}, thrown {thrown}"
+        found.append(Claim("balance", text, kept, rest, "none set", None, rests, AS_LET_GO))
+    return [*found, *(Words(t) for t in told)]
 
 
 def feel(results: Results) -> list[Claim | Words]:
     """Return the smallest change of tool force that the hand would notice."""
     values = np.asarray(results.stroke.feel_n, dtype=float)
     if not np.isfinite(values).any():
-        reason = results.stroke.not_covered.get("feel_n")
+        reason = why_not(results, "feel_n", "")
         return [Words(f"Feel is not covered: {reason}.")] if reason else []
     low, high = float(np.nanmin(values)), float(np.nanmax(values))
     p = int(np.nanargmax(values))
@@ -201,9 +227,11 @@ def feel(results: Results) -> list[Claim | Words]:
         f"The smallest change of tool force that the hand would notice is {quantity(low, 'N', 1)} to "
         f"{quantity(high, 'N', 1)} along the stroke; it is largest at {quantity(100 * results.stroke.stroke[p], '%')}."
     )
+    detail = results.details.get("let_go") or {}
+    told = [str(detail[key]) for key in ("feel", "screw") if detail.get(key)]
     claim = Claim("feel", text, quantity(high, "N", 1), between(low, high, "N") + " along the stroke", "none set", None,
                   backing(results, "feel"))  # fmt: skip
-    return [claim, *(Words(t) for t in said(results, "feel"))]
+    return [claim, *(Words(t) for t in told)]
 
 
 def strong_end(results: Results) -> list[Claim | Words]:
@@ -212,14 +240,16 @@ def strong_end(results: Results) -> list[Claim | Words]:
     if not np.isfinite(values).any():
         return []
     p = int(np.nanargmax(values))
-    text = (
+    text, *rest = said(results, "strong_end") or [
         f"The strongest hundredth of the men can put {quantity(values[p], 'N')} on the handle, at "
         f"{quantity(100 * results.stroke.stroke[p], '%')} of the stroke; lever, pins and stops must survive it."
-    )
+    ]
     spread = between(float(np.nanmin(values)), float(np.nanmax(values)), "N", 0) + " along the stroke"
-    claim = Claim("strong end", text, quantity(values[p], "N"), spread, "none set", None, backing(results, "strong end"),
-                  _strong_backing(results))  # fmt: skip
-    return [claim, *(Words(t) for t in said(results, "strong_end"))]
+    rests = backing(results, "strong end")
+    claim = Claim(
+        "strong end", text, quantity(values[p], "N"), spread, "none set", None, rests, _strong_backing(results)
+    )
+    return [claim, *(Words(t) for t in rest)]
 
 
 def _strong_backing(results: Results) -> str:

@@ -15,6 +15,8 @@ STANDARDS: list[Any] = ["a-2a", "ua-1"]
 # PDF/A wants a date; the clock would make every run another file, so the layout's own date stands in.
 LAYOUT_DATE = (2026, 12, 1)
 LONGEST_RUN = 32
+# A table up to this size is kept on one page.
+MOST_ROWS_WHOLE, MOST_TEXT_WHOLE = 14, 1200
 BREAK = "\u200b"
 FOOTER = "Screening calculation from population data; not a risk assessment. Pullward "
 
@@ -121,6 +123,7 @@ def _rows(block: Rows) -> dict[str, Any]:
         "columns": [printable(c) for c in block.columns],
         "rows": [[printable(c) for c in row] for row in block.rows],
         "widths": list(block.widths) or _widths(block),
+        "long": len(block.rows) > MOST_ROWS_WHOLE or sum(len(c) for row in block.rows for c in row) > MOST_TEXT_WHOLE,
         "numeric": [n > 0 and all(_number_like(row[n]) for row in block.rows) for n in range(len(block.columns))],
     }
 

@@ -55,7 +55,7 @@ def report(results: Results, drawings: Drawings, against: Sequence[Results] = ()
         Section("What would change the verdict", _flips(results)),
         Section("Residual risks and cautions", _risks(results)),
         Section("What to verify with real operators", _trial(results)),
-        Section("Inputs in full", (inputs.input_rows(results),), fresh_page=True),
+        Section("Inputs in full", (inputs.input_rows(results),)),
         Section("Methods, their range and status", _methods(results)),
         Section("Sources", (inputs.bibliography_rows(results),)),
         Section("Manifest", _manifest(results)),
@@ -227,7 +227,7 @@ def _trial(results: Results) -> tuple[Block, ...]:
         )
     items += [
         "The job was worked for a whole spell at "
-        f"{quantity(results.study['duty']['strokes_per_minute'], 'strokes a minute', 1)} and the operators were asked about "
+        f"{figure(results.study['duty']['strokes_per_minute'], 1)} strokes a minute and the operators were asked about "
         "effort and discomfort.",
         "Guards, stops and instructions were reviewed under the local rules by the person answerable for them.",
     ]

@@ -102,7 +102,10 @@ def not_covered(results: Results) -> Points | None:
         "overrun_mm": "overrun",
         "gap_mm": "gap",
     }
-    items = tuple(f"{names.get(key, key)}: {reason}" for key, reason in results.stroke.not_covered.items())
+    items = tuple(
+        f"{names.get(key, key)}: {reason.removeprefix('not covered: ')}"
+        for key, reason in results.stroke.not_covered.items()
+    )
     return Points(items) if items else None
 
 

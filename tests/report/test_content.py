@@ -93,6 +93,21 @@ def test_overrun_and_balance_are_told_at_the_let_go(short):
     assert told["balance"].number == "91.0\u202f%"
 
 
+def test_a_let_go_that_was_not_asked_for_is_not_claimed(factory):
+    steps = {name: (head, rows) for name, head, rows in argument(factory.made(load__lets_go_at=None))}
+    head, rows = steps["let_go"]
+    assert head == "Let-go was not rated"
+    assert not any(isinstance(row, Claim) for row in rows)
+
+
+def test_the_overrun_is_read_before_the_load_is_gone(short):
+    from ergo.pictures.ribbon import let_go_position
+
+    # 84 % lies between the positions 80 and 85 %; the load is still there at 80 %.
+    assert let_go_position(short, 0.84) == 16
+    assert let_go_position(short, 0.8) == 16
+
+
 def test_inputs_hold_every_value_with_unit_and_meaning(short):
     rows = {row[0]: row for row in input_rows(short).rows}
     assert rows["lever.length_mm"][1:3] == ("300", "mm")
