@@ -152,6 +152,11 @@
       return skip();
     }
     board.change = state.change;
+    if (board.then && !board.unheard.length) {
+      const link = document.querySelector(`a.page-link[href="${board.then}"]`);
+      board.then = null;
+      if (link) link.click();
+    }
     const waiting = new Set(board.unheard.filter((e) => e.do === "set").map((e) => e.path));
     if (board.held && board.held.do === "set") waiting.add(board.held.path);
     for (const [path, value] of Object.entries(state.values)) {
@@ -446,6 +451,10 @@
     else if (button.id === "conflict-take") { board.change = Infinity; board.send({ do: "take" }, "rest"); }
     else if (button.id === "conflict-keep") board.send({ do: "keep", edits: board.refused }, "rest");
     else if (button.dataset.view) show(button);
+    else if (button.dataset.path) {
+      board.then = "/";                       // the page is built when the change has been confirmed
+      board.set(button.dataset.path, Number(button.dataset.value), "rest");
+    }
     else if (button.id.startsWith("{")) {
       const id = JSON.parse(button.id);
       if (id.type === "add" || id.type === "remove") board.send({ do: id.type, path: id.path }, "rest");

@@ -8,7 +8,18 @@ from dash import Dash
 from flask import has_request_context, request
 
 from ergo.board import drawings, guard
-from ergo.board.callbacks import bench, left_out, let_go, opening, placements, shell, sources, take_away, values
+from ergo.board.callbacks import (
+    bench,
+    left_out,
+    let_go,
+    opening,
+    placements,
+    search,
+    shell,
+    sources,
+    take_away,
+    values,
+)
 from ergo.board.judge import Judge
 from ergo.board.room import Room
 from ergo.board.shell import frame
@@ -57,7 +68,7 @@ def create_app(*, evaluate: Callable[..., Results], make_report: Callable[..., b
     guard.guard(app.server, port=port, hosts=(*guard.LOOPBACK, host))
     app.server.add_url_rule("/inks.css", "inks", lambda: (drawings.theme_css(), 200, {"Content-Type": "text/css"}))
     app.layout = lambda: frame(engine_ready=room.judge.ready.is_set(), theme=_theme())
-    for page in (shell, values, bench, left_out, let_go, opening, placements, sources, take_away):
+    for page in (shell, values, bench, left_out, let_go, opening, placements, search, sources, take_away):
         page.register(app, room)
     app.server.config["BOARD_CSP"] = guard.policy(app)
     app.server.config["BOARD_ROOM"] = room

@@ -110,6 +110,28 @@ class Judge:
             self._changed.notify_all()
         return question
 
+    def lend(self, study: Study, tell: Callable[[float, str], None]) -> Results:
+        """Return the answer to a study for long work in the background, behind everything that a hand waits for."""
+        known = self.known(study)
+        if known is not None:
+            return known
+        with self._changed:
+            while self._queue or self._running is not None:
+                self._changed.wait(0.5)
+                tell(0.0, "the hand goes first")
+        extra: dict[str, Any] = {"tell": tell} if self._tells else {}
+        with ENGINE:
+            results = self._evaluate(study, **extra)
+        self._remember(question_key(study), results)
+        return results
+
+    def _remember(self, key: str, results: Results) -> None:
+        with self._changed:
+            self._answers[key] = results
+            self._answers.move_to_end(key)
+            while len(self._answers) > RESULTS_KEPT:
+                self._answers.popitem(last=False)
+
     def _work(self, first: Study | None) -> None:
         if first is not None:
             try:
@@ -142,13 +164,12 @@ class Judge:
             answer = error
         except Exception as error:
             answer = PullwardError(f"the engine failed on this study: {type(error).__name__}: {error}")
+        if isinstance(answer, Results):
+            self._cost_s = (time.perf_counter() - started) / _size(question.study)
+            self._remember(question.key, answer)
         with self._changed:
             self._running = None
-            if isinstance(answer, Results):
-                self._cost_s = (time.perf_counter() - started) / _size(question.study)
-                self._answers[question.key] = answer
-                while len(self._answers) > RESULTS_KEPT:
-                    self._answers.popitem(last=False)
+            self._changed.notify_all()
         question.answer(SupersededError() if question.dropped else answer)
 
 

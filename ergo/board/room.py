@@ -4,6 +4,7 @@ from collections.abc import Callable
 from dataclasses import dataclass, field
 from pathlib import Path
 
+from ergo.board.jobs import Jobs
 from ergo.board.judge import Judge
 from ergo.board.store import Store
 
@@ -17,4 +18,5 @@ class Room:
     folder: Path | None
     make_report: Callable[..., bytes] | None
     first: Path | None = None
+    jobs: Jobs = field(default_factory=Jobs)
     greeted: set[str] = field(default_factory=set)

@@ -34,11 +34,12 @@ def _draw(app: Dash, room: Room) -> None:
     @app.callback(
         Output(Id.DRAWN, "data"),
         Output(Id.RATINGS, "children"),
+        Output(Id.SHOWN, "data"),
         Input(Id.ARRIVED, "data"),
         Input(Id.VARIANT, "value"),
         State(Id.TAB, "data"),
     )
-    def draw(state: dict[str, Any] | None, variant: str | None, tab: str) -> tuple[Any, Any]:
+    def draw(state: dict[str, Any] | None, variant: str | None, tab: str) -> tuple[Any, Any, Any]:
         work = room.store.work(work_key())
         state = state or {}
         with work.lock:
@@ -54,9 +55,10 @@ def _draw(app: Dash, room: Room) -> None:
         except SupersededError as error:
             raise PreventUpdate from error
         except (PullwardError, TimeoutError) as error:
-            return no_update, refusal(str(error))
+            return no_update, refusal(str(error)), no_update
         drawn = bundle(results, question.study, change, full=study.operators.count)
-        return {**drawn, "more": more}, ratings.strip(results, drawn["key"])
+        shown = {"key": drawn["key"], "position": drawn["position"]}
+        return {**drawn, "more": more}, ratings.strip(results, drawn["key"]), shown
 
 
 def _point(app: Dash, room: Room) -> None:
@@ -78,15 +80,15 @@ def _space(app: Dash, room: Room) -> None:
     @app.callback(
         Output(Id.SPACE_PICTURE, "children"),
         Input(Id.VIEW, "data"),
-        Input(Id.DRAWN, "data"),
+        Input(Id.SHOWN, "data"),
         Input(Id.POINTER, "data"),
         Input(Id.THEME, "forceColorScheme"),
     )
-    def space(view: str, drawn: Any, pointer: Any, theme: str) -> Any:
-        results = room.judge.answer_to(str((drawn or {}).get("key", "")))
+    def space(view: str, shown: Any, pointer: Any, theme: str) -> Any:
+        results = room.judge.answer_to(str((shown or {}).get("key", "")))
         if view != "space" or results is None:
             raise PreventUpdate
-        asked = pointer if pointer and pointer.get("key") == drawn["key"] else drawn
+        asked = pointer if pointer and pointer.get("key") == shown["key"] else shown
         position = int(np.clip(int(asked.get("position", 0)), 0, results.stroke.stroke.size - 1))
         return bench.space(space_figure(results, position, drawings.THEMES[theme]))
 

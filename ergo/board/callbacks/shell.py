@@ -10,6 +10,7 @@ from ergo.board.guard import work_key
 from ergo.board.ids import Id
 from ergo.board.opening import in_folder, open_file, shipped
 from ergo.board.room import Room
+from ergo.board.searching import keys_to_vary
 from ergo.board.store import Work
 
 READ = {"/left-out": Id.LEFT_OUT_BODY, "/let-go": Id.LET_GO_BODY, "/sources": Id.SOURCES_BODY}
@@ -69,6 +70,8 @@ def page_of(path: str, work: Work, room: Room) -> Any:
         return layouts.take_away.page(work.name, folder=room.folder is not None, report=room.make_report is not None)
     if path == "/placements":
         return layouts.placements.page(work)
+    if path == "/search":
+        return layouts.search.page(keys_to_vary(work.draft.data), suggests=False)
     if path in READ:
         return html.Div(html.Div(html.P("The engine is at it.", className="waiting"), id=READ[path]), className="page")
     return layouts.bench.page(work.draft)

@@ -19,6 +19,12 @@ ZONE = {"role": "hazard", "shape": "box", "size_mm": [100.0, 100.0, 100.0]}
 
 def register(app: Dash, room: Room) -> None:
     """Make the values work."""
+    _edit(app, room)
+    _hear(app)
+
+
+def _edit(app: Dash, room: Room) -> None:
+    """Apply edits, and build the drawer anew when its keys have changed."""
 
     @app.callback(
         Output(Id.ARRIVED, "data"),
@@ -53,6 +59,9 @@ def register(app: Dash, room: Room) -> None:
             return no_update, notices.problems(draft), no_update
         return values.drawer(draft), notices.problems(draft), shape
 
+
+def _hear(app: Dash) -> None:
+    """Let the page hear its own controls, and what the server says to them."""
     arguments = [Input({"type": str(part), "path": ALL}, prop) for part, prop in
                  ((Part.VALUE, "value"), (Part.VALUE, "checked"), (Part.SLIDER, "value"))]  # fmt: skip
     app.clientside_callback(

@@ -31,6 +31,7 @@ def page(draft: Draft) -> html.Div:
             ),
             dcc.Store(id=Id.DRAWN),
             dcc.Store(id=Id.PEOPLE_DRAWN),
+            dcc.Store(id=Id.SHOWN),
             dcc.Store(id=Id.POINTER),
             dcc.Store(id=Id.VIEW, data="machine"),
         ],
