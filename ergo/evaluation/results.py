@@ -142,7 +142,7 @@ class Results:
         row["capability_n"] = {name: _plain(v[p]) for name, v in s.capability_n.items()}
         row["allowed_n"] = {name: _plain(v[p]) for name, v in s.allowed_n.items()}
         row["governing"], row["lost"] = _plain(s.governing[p]), _plain(s.lost[p])
-        row["overrun_mm"] = dict(zip(("p5", "p50", "p95"), _plain(s.overrun_mm[p]), strict=True))
+        row["overrun_mm"] = dict(zip(("p05", "p50", "p95"), _plain(s.overrun_mm[p]), strict=True))
         row["overrun_toward"] = s.overrun_toward[p]
         row["balance"] = dict(zip(("kept", "step", "thrown"), _plain(s.balance[p]), strict=True))
         return row
