@@ -19,6 +19,8 @@ def add(subparsers: "argparse._SubParsersAction[argparse.ArgumentParser]") -> No
     parser.add_argument("--operators", type=int, metavar="N", help="draw this many operators")
     parser.add_argument("--seed", type=int, metavar="K", help="draw them from this seed")
     parser.add_argument("--json", metavar="FILE", help="write the results as JSON; - for standard output only")
+    parser.add_argument("--flips", action="store_true",
+                        help="also find the recalled or derived numbers that would flip a target (takes minutes)")  # fmt: skip
     parser.add_argument("--strict", action="store_true", help="exit with 1 when the study falls short")
     parser.set_defaults(run=run)
 
@@ -30,7 +32,7 @@ def run(args: argparse.Namespace) -> int:
     from ergo.errors import EXIT_DONE, EXIT_FALLS_SHORT
 
     study = chosen_study(args.study, variant=args.variant, operators=args.operators, seed=args.seed)
-    results = judged(study, quiet=args.json == "-")
+    results = judged(study, quiet=args.json == "-", flips=args.flips)
     if args.json:
         from ergo.cli.writing import write_json
 
@@ -58,6 +60,10 @@ def show(results: "Results") -> None:
     _section(console, "Who is left out, where they are lost first", terminal.left_out_lines(results))
     _section(console, "When the load lets go", terminal.let_go_lines(results))
     _section(console, "What decides it, and what is not known", terminal.wrapped(results.reasons[1:]))
+    flips = results.details.get("flips")
+    if flips is not None:
+        sentences = [f["sentence"] for f in flips] or ["No recalled or derived number alone would flip a target."]
+        _section(console, "Numbers that would flip it, each alone at an end of its range", terminal.wrapped(sentences))
     _section(console, "Cautions", terminal.wrapped(results.cautions))
     _section(console, "Numbers that decided, with source and status", terminal.source_lines(results))
 

@@ -7,7 +7,7 @@ if TYPE_CHECKING:
     from ergo.study.model import Study
 
 
-def judged(study: "Study", *, quiet: bool = False) -> "Results":
+def judged(study: "Study", *, quiet: bool = False, flips: bool = False) -> "Results":
     """Evaluate a study, with a bar on the terminal's error channel unless `quiet` or piped."""
     from rich.console import Console
     from rich.progress import BarColumn, Progress, TextColumn, TimeElapsedColumn
@@ -16,7 +16,7 @@ def judged(study: "Study", *, quiet: bool = False) -> "Results":
 
     console = Console(stderr=True)
     if quiet or not console.is_terminal:
-        return evaluate(study)
+        return evaluate(study, with_flips=flips)
     columns = (TextColumn("{task.description}"), BarColumn(), TimeElapsedColumn())
     with Progress(*columns, console=console, transient=True) as bar:
         task = bar.add_task("judging", total=1.0)
@@ -24,4 +24,4 @@ def judged(study: "Study", *, quiet: bool = False) -> "Results":
         def tell(share: float, what: str) -> None:
             bar.update(task, completed=share, description=what)
 
-        return evaluate(study, tell=tell)
+        return evaluate(study, tell=tell, with_flips=flips)

@@ -57,7 +57,8 @@ def release(made: Plan, capability: HandCapability, posture: Posture, gap: Gaps)
     within = harmless(made, run)
     fine = (within & steady(stands))[:, at, :]
     safe = fine[:, 0] if asked is not None else np.ones(fine.shape[0], dtype=bool)
-    details = _details(made, run, stands, at, asked)
+    hurt = float(np.mean(~within[:, at, 0]))
+    details = _details(made, run, stands, at, asked, hurt)
     rating = let_go(
         fine[:, 0], np.logical_and.reduce(fine, axis=1), np.logical_or.reduce(fine, axis=1), made.people.women,
         float(made.machine.drive.stroke[at]), _cause(fine[:, 0], within[:, at, 0]), details["sentences"][0],
@@ -188,7 +189,8 @@ def _cause(fine: NDArray[np.bool_], within: NDArray[np.bool_]) -> str:
     return "hand meets something" if (~within).mean() > (within & ~fine).mean() else "balance"
 
 
-def _details(made: Plan, run: hand.HandRun, stands: body.Balance, at: int, asked: float | None) -> dict[str, Any]:
+def _details(made: Plan, run: hand.HandRun, stands: body.Balance, at: int, asked: float | None,
+             hurt: float) -> dict[str, Any]:  # fmt: skip
     """Return the figures of the judged position, and sentences in plain words."""
     low, middle, high = run.band(run.overrun_m)[:, at] * 1e3
     speed = run.band(run.peak_speed_m_s)[1, at]
@@ -204,7 +206,8 @@ def _details(made: Plan, run: hand.HandRun, stands: body.Balance, at: int, asked
                  f" {percent(shares['thrown'])} are thrown")  # fmt: skip
     sentences = [
         f"{first}{'' if asked is None else ','} the hand runs on {middle:.0f} mm {heading} (P5 {low:.0f}, P95 {high:.0f} mm);"
-        f" {body_says}{', mostly ' + way if unkept > 0.005 else ''}.",
+        f" {body_says}{', mostly ' + way if unkept > 0.005 else ''}; {percent(hurt)} of the hands meet a hazard, or something"
+        " harder than the contact limits.",
         "What the hand meets first: " + ", ".join(f"{name} {percent(v)}" for name, v in met.items() if v > 0.0) + ".",
         f"Peak speed of the hand is {speed:.1f} m/s (middle of people and parameter ranges). Contact limits are those of"
         " ISO/TS 15066, for want of limits for levers.",

@@ -64,7 +64,9 @@ def _against_table(plan: Plan, capability: HandCapability, table_n: Array, men: 
     """Say where model and handbook disagree on P5 men by more than LOUD."""
     if not men.any() or not np.isfinite(table_n).any():
         return []
-    weak = np.percentile(capability.force_n[men], 5.0, axis=0)
+    reached = np.where(capability.reached[men], capability.force_n[men], np.nan)
+    covered = np.isfinite(reached).any(axis=0)
+    weak = np.nanpercentile(np.where(covered, reached, 0.0), 5.0, axis=0)
     ratio = np.where(np.isfinite(table_n) & (weak > 0.0), weak / table_n, 1.0)
     worst = int(np.argmax(np.abs(np.log(np.maximum(ratio, 1e-9)))))
     if abs(ratio[worst] - 1.0) <= LOUD:

@@ -69,7 +69,7 @@ def people_of(study: Study, library: Library) -> Operators:
     """Return the operators that the study asks for."""
     asked = study.operators
     name = asked.population
-    population: str | Path = Path(name) if name.endswith(".csv") else name
+    population: str | Path = Path(study.folder) / name if name.endswith(".csv") else name
     return draw(
         library,
         population,

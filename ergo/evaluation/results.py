@@ -147,6 +147,12 @@ class Results:
         row["balance"] = dict(zip(("kept", "step", "thrown"), _plain(s.balance[p]), strict=True))
         return row
 
+    def _repr_html_(self) -> str:
+        """Return the results for a notebook; the report writes them, and is loaded only then."""
+        import importlib
+
+        return str(importlib.import_module("ergo.report.html").results_html(self))
+
     def stroke_frame(self) -> "pd.DataFrame":
         """Return the stroke as a table, one row a position, units in the column names."""
         import pandas as pd

@@ -1,6 +1,7 @@
 """The table of contents of an evaluation: people, machine, capability, opinions, ratings, results."""
 
 from collections.abc import Callable
+from dataclasses import asdict, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -11,6 +12,7 @@ from ergo.arm.posture import Posture, describe_postures
 from ergo.datasets import Library
 from ergo.datasets import library as shipped
 from ergo.evaluation.clearance import Gaps, gaps
+from ergo.evaluation.flips import flips
 from ergo.evaluation.letting_go import Release, release
 from ergo.evaluation.manifest import manifest
 from ergo.evaluation.opinions import Opinions, opinions
@@ -19,8 +21,13 @@ from ergo.evaluation.plan import Plan, plan
 from ergo.evaluation.provenance import memory_tables, numbers_used
 from ergo.evaluation.rate import rate
 from ergo.evaluation.results import Results
+from ergo.evaluation.strong_end import TABLES as STRONG_TABLES
+from ergo.evaluation.strong_end import strong_end
 from ergo.evaluation.tables import crowd_table, people_row, stroke_table
 from ergo.evaluation.tally import Tally, tally
+from ergo.evaluation.touching import touching
+from ergo.evaluation.twisting import TABLES as TWIST_TABLES
+from ergo.evaluation.twisting import twisting
 from ergo.people.operators import Operators
 from ergo.rating import reasons
 from ergo.strength.hand_capability import HandCapability, hand_capability
@@ -35,7 +42,7 @@ def _silent(share: float, what: str) -> None:
 
 
 def evaluate(study: Study, *, library: Library | None = None, operators: Operators | None = None,
-             tell: Tell = _silent) -> Results:  # fmt: skip
+             tell: Tell = _silent, with_flips: bool = False) -> Results:  # fmt: skip
     """Judge one study.
 
     Parameters
@@ -48,6 +55,8 @@ def evaluate(study: Study, *, library: Library | None = None, operators: Operato
         People drawn before, so that several studies meet the same people.
     tell : callable, optional
         Called with a share 0..1 and a word as the work goes on.
+    with_flips : bool
+        Whether to look for the doubtful numbers that would flip a target (many coarse evaluations).
 
     Returns
     -------
@@ -73,7 +82,11 @@ def evaluate(study: Study, *, library: Library | None = None, operators: Operato
     tell(0.95, "rating")
     clear = gap.gap_m >= study.targets.gap_min_mm * 1e-3
     counted = tally(made, capability, clear, (gap.names, gap.zone), gone.safe, gone.at_stroke)
-    return _results(made, capability, posture, gap, second, gone, counted)
+    results = _results(made, capability, posture, gap, second, gone, counted)
+    if not with_flips:
+        return results
+    found = [{**asdict(flip), "sentence": flip.sentence()} for flip in flips(study, evaluate, tables, tell)]
+    return replace(results, details={**results.details, "flips": found})
 
 
 def easiest_postures(made: Plan, capability: HandCapability) -> Posture:
@@ -89,9 +102,12 @@ def _results(made: Plan, capability: HandCapability, posture: Posture, gap: Gaps
     study = made.study
     ratings = rate(made, capability, posture, gap, gone, counted)
     short = [name for name, rating in ratings.items() if not rating.met]
-    used = numbers_used(made.library, study.operators.population, gone.tables)
+    strong, turned, touched = strong_end(made, capability), twisting(made, capability, posture), touching(made, posture)
+    extra = [*gone.tables, "clearance_parameters", *(STRONG_TABLES if study.structure else ()), *(TWIST_TABLES if study.grip.turns else ())]
+    used = numbers_used(made.library, study.operators.population, extra)
     title = study.study.title + (f" ({study.variant_name})" if study.variant_name else "")
-    said = [reasons.verdict(title, short), *second.sentences, *_work_sentences(made), *made.machine.drive.notes]
+    said = [reasons.verdict(title, short), *second.sentences, *_work_sentences(made), gone.details["feel"], gone.details["screw"],
+            *turned["sentences"], *touched["sentences"], *strong["sentences"], *made.machine.drive.notes]
     return Results(
         version=__version__,
         study=study.content(),
@@ -102,7 +118,7 @@ def _results(made: Plan, capability: HandCapability, posture: Posture, gap: Gaps
         persons=persons(made, capability, posture, counted.served),
         crowd=crowd_table(made, capability, counted),
         verdict="falls short" if short else "meets",
-        reasons=tuple(said),
+        reasons=tuple(s for s in said if s),
         cautions=reasons.cautions(memory_tables(used)),
         sources=used,
         details={
@@ -112,6 +128,9 @@ def _results(made: Plan, capability: HandCapability, posture: Posture, gap: Gaps
                 "governs": made.repetition.governs,
             },
             "let_go": gone.details,
+            "strong_end": strong,
+            "twist": turned,
+            "touch_points": touched,
             "reach_lines_mm": reach_lines_mm(made, capability),
             "mobility": made.machine.drive.mobility,
             "self_locking": made.machine.drive.self_locking,

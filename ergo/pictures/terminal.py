@@ -75,7 +75,7 @@ def direction_line(results: Results) -> str:
     """Return the stroke as a strip: `<` pulled toward the operator, `>` pushed away, `|` neither."""
     at = np.linspace(0.0, 1.0, CHART_WIDTH)
     pull = np.interp(at, results.stroke.stroke, results.stroke.pull)
-    return "         " + "".join("<" if v > 0.5 else (">" if v < -0.5 else "|") for v in pull)
+    return "         " + "".join("<" if v > 0.35 else (">" if v < -0.35 else "|") for v in pull)
 
 
 def left_out_lines(results: Results) -> list[str]:

@@ -116,6 +116,6 @@ def cautions(memory_tables: list[str]) -> tuple[str, ...]:
         " poor floors are not in it.",
     ]
     if memory_tables:
-        found.append("Numbers recalled and not checked against the print take part in this result, in: "
-                     + ", ".join(memory_tables) + ". Check them before you rely on a close verdict.")  # fmt: skip
+        found.append(f"Numbers recalled and not checked against the print (status memory) take part, in {len(memory_tables)}"
+                     " tables that are named with the sources. Check them before you rely on a close verdict.")  # fmt: skip
     return tuple(found)

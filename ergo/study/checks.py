@@ -7,6 +7,7 @@ import numpy as np
 from ergo.datasets import library, table_keys
 from ergo.errors import Problem
 from ergo.frames import pivot_axis
+from ergo.letgo import structure
 from ergo.load import drilling, press_fit
 from ergo.mechanism import friction as rubbing
 from ergo.mechanism.drive import slide_travel_m
@@ -23,7 +24,7 @@ BODY_DEPTH_MM = 150.0
 
 def cross_checks(study: Study, *, partial: bool = False) -> list[Problem]:
     """Return every problem between keys; with `partial` those of missing sections are left to others."""
-    checks: list[Check] = [_bench, _people, _grip, _zones, _touch_points, _targets]
+    checks: list[Check] = [_bench, _people, _grip, _zones, _touch_points, _targets, _structure]
     if study.path is None and study.lever is None:
         if not partial:
             return [p for check in checks for p in check(study)] + [
@@ -95,6 +96,21 @@ def _targets(study: Study) -> Iterator[Problem]:
             yield Problem(f"targets.free.{path}", "is not a key of a study")
         elif low > high:
             yield Problem(f"targets.free.{path}", "the first bound must not exceed the second", f"{low:g}, {high:g}")
+
+
+def _structure(study: Study) -> Iterator[Problem]:
+    made = study.structure
+    if made is None:
+        return
+    known, threads = structure.materials(library()), structure.threads(library())
+    for name in ("lever_material", "pin_material"):
+        if getattr(made, name) not in known:
+            yield Problem(f"structure.{name}", "is not a known material", getattr(made, name), ", ".join(known))
+    if made.pin_thread is not None and made.pin_thread not in threads:
+        yield Problem("structure.pin_thread", "is no coarse metric thread", made.pin_thread, ", ".join(threads))
+    if made.wall_mm is not None and made.lever_diameter_mm is not None and 2.0 * made.wall_mm >= made.lever_diameter_mm:
+        yield Problem("structure.wall_mm", "leaves no bore in the tube", f"{made.wall_mm:g}",
+                      f"below {0.5 * made.lever_diameter_mm:g} mm")  # fmt: skip
 
 
 def _lever(study: Study) -> Iterator[Problem]:

@@ -187,11 +187,11 @@ class Structure(Section):
     lever_depth_mm: float | None = key(None, "depth of a rectangular section, in the lever's plane", unit="mm",
                                        low=2, high=300)  # fmt: skip
     wall_mm: float | None = key(None, "wall of a tube", unit="mm", low=0.5, high=50)
-    lever_material: str = key("structural steel S235", "material of the lever")
+    lever_material: str = key("S235JR", "material of the lever")
     pin_diameter_mm: float | None = key(None, "diameter of the pivot pin", unit="mm", low=2, high=100)
     pin_shear: Literal["single", "double"] = key("double", "shear planes of the pin", choices=("single", "double"))
     pin_thread: str | None = key(None, "thread in the shear plane, such as M8")
-    pin_material: str = key("structural steel S235", "material of the pin")
+    pin_material: str = key("S235JR", "material of the pin")
 
 
 class PathSection(Section):
