@@ -36,11 +36,6 @@ def stroke_table(made: Plan, capability: HandCapability, gap: Gaps, second: Opin
     capable = percentile_curves(capability.force_n, women)
     everyone = np.ones(women.size, dtype=bool)
     fine = capability.reached & counted.strong & counted.clear
-    lost = []
-    for p in range(drive.stroke.size):
-        rows = shares_by_limit(capability.limit[:, p], ~capability.reached[:, p] | ~counted.strong[:, p])
-        unclear = capability.reached[:, p] & counted.strong[:, p] & ~counted.clear[:, p]
-        lost.append({**rows, "clearance": float(unclear.mean())} if unclear.any() else rows)
     nearest = gap.gap_m.min(axis=0) * 1e3
     return StrokeTable(
         stroke=drive.stroke,
@@ -62,7 +57,7 @@ def stroke_table(made: Plan, capability: HandCapability, gap: Gaps, second: Opin
         served_share=fine.mean(axis=0),
         reach_share=capability.reached.mean(axis=0),
         governing=tuple(shares_by_limit(capability.limit[:, p], everyone) for p in range(drive.stroke.size)),
-        lost=tuple(lost),
+        lost=tuple(_lost(capability, counted, p) for p in range(drive.stroke.size)),
         table_n=second.table_n,
         en_1005_3_n=second.standard.reduced_n,
         overrun_mm=gone.overrun_mm,
@@ -72,6 +67,14 @@ def stroke_table(made: Plan, capability: HandCapability, gap: Gaps, second: Opin
         feel_n=gone.feel_n,
         not_covered={**second.not_covered, **gone.not_covered},
     )
+
+
+def _lost(capability: HandCapability, counted: Tally, p: int) -> dict[str, float]:
+    """Return the share of operators not served at one position, by what loses them."""
+    reached, strong = capability.reached[:, p], counted.strong[:, p]
+    rows = shares_by_limit(capability.limit[:, p], ~reached | ~strong)
+    unclear = reached & strong & ~counted.clear[:, p]
+    return {**rows, "clearance": float(unclear.mean())} if unclear.any() else rows
 
 
 def crowd_table(made: Plan, capability: HandCapability, counted: Tally) -> PeopleTable:
