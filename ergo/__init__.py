@@ -5,6 +5,7 @@
 >>> results.ratings["reach"].value, results.stroke_frame()
 """
 
+import importlib
 from typing import Any
 
 from ergo.arm import compiled as _compiled  # noqa: F401  (names numba's cache folder before anything imports numba)
@@ -15,27 +16,20 @@ __all__ = ["evaluate", "library", "read_study", "shipped_studies"]
 
 def shipped_studies() -> dict[str, str]:
     """Return the shipped studies: name -> path."""
-    from ergo.sources import folder
-
-    return {path.stem: str(path) for path in sorted((folder("datasets") / "studies").glob("*.toml"))}
+    folder = importlib.import_module("ergo.sources").folder("datasets") / "studies"
+    return {path.stem: str(path) for path in sorted(folder.glob("*.toml"))}
 
 
 def read_study(name: str) -> Any:
     """Return the study in a file, or a shipped study by its name; StudyError with every problem."""
-    from ergo.study.reader import read
-
-    return read(shipped_studies().get(name, name))
+    return importlib.import_module("ergo.study.reader").read(shipped_studies().get(name, name))
 
 
-def __getattr__(name: str) -> Any:
-    """Load `evaluate` and `library` when first asked for, so that importing the package stays light."""
-    if name == "evaluate":
-        from ergo.evaluation.run import evaluate
+def evaluate(study: Any, **options: Any) -> Any:
+    """Judge a study: see `ergo.evaluation.run.evaluate`. Loaded when called, so that importing stays light."""
+    return importlib.import_module("ergo.evaluation.run").evaluate(study, **options)
 
-        return evaluate
-    if name == "library":
-        from ergo.datasets import library
 
-        return library
-    msg = f"module 'ergo' has no attribute {name!r}"
-    raise AttributeError(msg)
+def library() -> Any:
+    """Return the shipped tables, for a what-if by `with_value`: see `ergo.datasets.Library`."""
+    return importlib.import_module("ergo.datasets").library()

@@ -33,8 +33,8 @@ def feel_row(made: Plan, touch: Touch) -> Felt:
         return Felt(newtons, "The hand has no cue of the tool force in this range.", reason)
     at = int(np.nanargmax(np.where(known, drive.load_n, np.nan)))
     unit = "N m" if made.study.linkage.kind == "shaft" else "N"
-    sentence = (f"At {100 * drive.stroke[at]:.0f} % of the stroke, of {drive.load_n[at]:.0f} {unit} at the tool the hand notices a"
-                f" change of {newtons[at]:.0f} {unit} ({100 * felt.smallest_share[at]:.0f} %); friction takes"
+    sentence = (f"At {100 * drive.stroke[at]:.0f} % of the stroke, of {drive.load_n[at]:.0f} {unit} at the tool the hand notices"
+                f" a change of {newtons[at]:.0f} {unit} ({100 * felt.smallest_share[at]:.0f} %); friction takes"
                 f" {100 * drive.friction_n[at] / demand[at]:.0f} % of the hand force, lever weight and spring"
                 f" {100 * drive.weight_n[at] / demand[at]:.0f} %.")  # fmt: skip
     return Felt(newtons, sentence, reason)

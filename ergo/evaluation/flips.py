@@ -69,10 +69,14 @@ def flips(study: Study, judge: "Callable[..., Results]", library: Library | None
         if tell is not None:
             tell(n / len(trials), f"{table}: {row}")
         met = _met(judge(coarse, library=changed))
-        changes = tuple(f"{name.replace('_', '-')} {'met' if met[name] else 'missed'}" for name in base if met[name] != base[name])
+        changes = tuple(_change(name, met[name]) for name in base if met[name] != base[name])
         if changes:
             found.append(Flip(table, row, value, status, source, changes))
     return tuple(found)
+
+
+def _change(name: str, met: bool) -> str:
+    return f"{name.replace('_', '-')} {'met' if met else 'missed'}"
 
 
 def _met(results: "Results") -> dict[str, bool]:

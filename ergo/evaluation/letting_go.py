@@ -147,14 +147,26 @@ def steady(stands: body.Balance) -> NDArray[np.bool_]:
 
 
 def harmless(made: Plan, run: hand.HandRun) -> NDArray[np.bool_]:
-    """Return where the hand meets no hazard, and nothing else harder than the published limits (n, P, S)."""
-    fist = contact.Region.from_library(made.library, "hand_fingers")
+    """Return where the hand meets no hazard, nor its own body harder than the published limits (n, P, S).
+
+    The end of travel stops the handle, not the hand that holds it: its jolt is told, and counts against nobody.
+    """
     chest = contact.Region.from_library(made.library, "chest")
-    stopped = contact.strike(fist, run.speed_m_s, run.moving_mass_kg, run.press_n, region_is_held=True)
     bumped = contact.strike(chest, run.speed_m_s, run.moving_mass_kg, run.press_n)
-    at_end = (run.met == hand.END_OF_TRAVEL) & stopped.within
     at_body = (run.met == hand.OWN_BODY) & bumped.within
-    return (run.met == hand.NOTHING) | at_end | at_body
+    return (run.met == hand.NOTHING) | (run.met == hand.END_OF_TRAVEL) | at_body
+
+
+def jolt_sentence(made: Plan, run: hand.HandRun, at: int) -> str:
+    """Say how hard the hand is jolted where the handle meets the end of its travel, empty where it does not."""
+    stopped = run.met[:, at, :] == hand.END_OF_TRAVEL
+    if not stopped.any():
+        return ""
+    fist = contact.Region.from_library(made.library, "hand_fingers")
+    blow = contact.strike(fist, run.speed_m_s[:, at], run.moving_mass_kg[:, at], run.press_n[:, at], region_is_held=True)
+    peak, energy = np.median(blow.peak_n[stopped]), np.median(blow.energy_j[stopped])
+    return (f"Where the handle meets its stop the jolt is about {peak:.0f} N and {energy:.1f} J in the middle (limit for a blow to"
+            f" the hand {fist.transient_n:.0f} N, status {fist.status}); a soft stop lowers it.")  # fmt: skip
 
 
 def _way_to_zone(made: Plan, gap: Gaps) -> Array:
@@ -206,12 +218,13 @@ def _details(made: Plan, run: hand.HandRun, stands: body.Balance, at: int, asked
                  f" {percent(shares['thrown'])} are thrown")  # fmt: skip
     sentences = [
         f"{first}{'' if asked is None else ','} the hand runs on {middle:.0f} mm {heading} (P5 {low:.0f}, P95 {high:.0f} mm);"
-        f" {body_says}{', mostly ' + way if unkept > 0.005 else ''}; {percent(hurt)} of the hands meet a hazard, or something"
-        " harder than the contact limits.",
+        f" {body_says}{', mostly ' + way if unkept > 0.005 else ''}; {percent(hurt)} of the hands meet a hazard, or their"
+        " own body harder than the contact limits.",
         "What the hand meets first: " + ", ".join(f"{name} {percent(v)}" for name, v in met.items() if v > 0.0) + ".",
         f"Peak speed of the hand is {speed:.1f} m/s (middle of people and parameter ranges). Contact limits are those of"
         " ISO/TS 15066, for want of limits for levers.",
     ]
+    sentences = [s for s in (*sentences[:2], jolt_sentence(made, run, at), sentences[2]) if s]
     return {"sentences": sentences, "overrun_mm": [low, middle, high], "peak_speed_m_s": float(speed), "balance": shares,
             "toward_machine": {n: float(v[at]) for n, v in toward.items()}, "met": met, "at_stroke":
             float(made.machine.drive.stroke[at]), "asked": asked is not None, "heading": heading}  # fmt: skip

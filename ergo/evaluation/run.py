@@ -103,7 +103,8 @@ def _results(made: Plan, capability: HandCapability, posture: Posture, gap: Gaps
     ratings = rate(made, capability, posture, gap, gone, counted)
     short = [name for name, rating in ratings.items() if not rating.met]
     strong, turned, touched = strong_end(made, capability), twisting(made, capability, posture), touching(made, posture)
-    extra = [*gone.tables, "clearance_parameters", *(STRONG_TABLES if study.structure else ()), *(TWIST_TABLES if study.grip.turns else ())]
+    extra = [*gone.tables, "clearance_parameters", "body_regression", "mass_on_stature"]
+    extra += [*(STRONG_TABLES if study.structure else ()), *(TWIST_TABLES if study.grip.turns else ())]
     used = numbers_used(made.library, study.operators.population, extra)
     title = study.study.title + (f" ({study.variant_name})" if study.variant_name else "")
     said = [reasons.verdict(title, short), *second.sentences, *_work_sentences(made), gone.details["feel"], gone.details["screw"],
