@@ -32,7 +32,8 @@ def twisting(made: Plan, capability: HandCapability, posture: Posture) -> dict[s
     rows = made.library.values("grip_on_handle")
     glove = made.people.glove
     friction = rows["friction_bare"] if glove == "none" else rows[f"friction_glove_{glove}"]
-    held = grip_strength_n(made.people.women, made.people.age_years, made.people.hand, made.people.strength_common_z, made.library)
+    people = made.people
+    held = grip_strength_n(people.women, people.age_years, people.hand, people.strength_common_z, made.library)
     slips = grip_torque_nm(held, friction, grip.diameter_mm * 1e-3, made.library)[:, None]
     share = made.task.share
     found = twist(np.full(len(at), grip.twist_torque_nm), np.zeros(len(at)), strength * share, slips * share,
