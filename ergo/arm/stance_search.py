@@ -16,6 +16,7 @@ from ergo.arm.posture_search import NEVER, judge_posture, look_everywhere, look_
 
 STANCES_X, STANCES_Y, STARTS = 6, 6, 4
 FULL_LOOK_EVERY = 5
+HOPELESS = 0.85  # a short look this far below the floor is not followed by a full one
 STANCE_COMPASS = np.array(
     [[1, 0], [-1, 0], [0, 1], [0, -1], [1, 1], [-1, -1], [1, -1], [-1, 1]], dtype=np.float64
 )
@@ -37,7 +38,8 @@ def stance_worth(op, shape, scene, limits, stand_x, stand_y, targets, weights, v
         enough = 1.1 * max(floor, 0.0) / weights[p] + 1e-6
         if smallest < 1.0:
             look_from(op, shape, scene, limits, stand_x, stand_y, targets[p], seen, 0.08, smallest, enough)
-        if smallest >= 1.0 or seen[3] * weights[p] <= floor or seen[3] < 0.0:
+        hopeless = smallest < 1.0 and 0.0 < seen[3] * weights[p] < HOPELESS * floor
+        if smallest >= 1.0 or seen[3] < 0.0 or (seen[3] * weights[p] <= floor and not hopeless):
             look_everywhere(op, shape, scene, limits, stand_x, stand_y, targets[p], seen, smallest, enough)
         margin = seen[3] * weights[p] if seen[3] >= 0.0 else seen[3]
         if margin < worst:
@@ -70,6 +72,8 @@ def best_stance(op, shape, scene, limits, window, targets, weights, visit, found
     for start in range(STARTS):
         row = tried[order[start]]
         row[0] = stance_worth(op, shape, scene, limits, row[1], row[2], targets, weights, visit, -1e9, found, 0.04)
+        if row[0] < HOPELESS * final[0]:
+            continue
         climb_stance(op, shape, scene, limits, window, targets, weights, visit, found, row, 0.1, 0.03, 0.04)
         if row[0] > final[0]:
             final[:] = row
