@@ -224,6 +224,23 @@ def elbow_in_trunk(op, arm, shoulder_x, shoulder_y, shoulder_z, stand_x, body):
 
 
 @bare
+def arm_moments(op, lines, rx, ry, rz, dx, dy, dz):
+    """What the muscles must give for a hand force F along d, as slope x F + weight.
+
+    Returns (elbow slope, elbow weight) about the hinge, flexion positive, and the shoulder's moment per newton (3)
+    and the part of it that the arm's weight asks for (x, y; it has no upright part).
+    """
+    upper = op[UPPER_MASS] * op[UPPER_COM] * op[UPPER] + (op[FOREARM_MASS] + op[HAND_MASS]) * op[UPPER]
+    fore = op[FOREARM_MASS] * op[FOREARM_COM] * (op[FOREARM] - op[WRIST]) + op[HAND_MASS] * op[FOREARM]
+    fx, fy = GRAVITY * fore * lines[4], -GRAVITY * fore * lines[3]
+    ax, ay, az = op[FOREARM] * lines[3], op[FOREARM] * lines[4], op[FOREARM] * lines[5]
+    slope = lines[6] * (ay * dz - az * dy) + lines[7] * (az * dx - ax * dz) + lines[8] * (ax * dy - ay * dx)
+    moment = (ry * dz - rz * dy, rz * dx - rx * dz, rx * dy - ry * dx)
+    weight = (fx + GRAVITY * upper * lines[1], fy - GRAVITY * upper * lines[0])
+    return slope, lines[6] * fx + lines[7] * fy, moment, weight
+
+
+@bare
 def judge_arm(op, shape, limits, ball, place, body, target, cos_swivel, sin_swivel, best, code):
     """Capability of one arm posture under a ceiling `best` set by stance and girdle: force, limit, discomfort."""
     shoulder_x, shoulder_y, shoulder_z, stand_x = place
@@ -244,17 +261,11 @@ def judge_arm(op, shape, limits, ball, place, body, target, cos_swivel, sin_swiv
     elevation, elbow = angle_deg(arm[10]), 180.0 - angle_deg(
         lines[0] * lines[3] + lines[1] * lines[4] + lines[2] * lines[5]
     )
-    upper = op[UPPER_MASS] * op[UPPER_COM] * op[UPPER] + (op[FOREARM_MASS] + op[HAND_MASS]) * op[UPPER]
-    fore = op[FOREARM_MASS] * op[FOREARM_COM] * (op[FOREARM] - op[WRIST]) + op[HAND_MASS] * op[FOREARM]
-    fy, fx = GRAVITY * fore * lines[4], -GRAVITY * fore * lines[3]
-    ax, ay, az = op[FOREARM] * lines[3], op[FOREARM] * lines[4], op[FOREARM] * lines[5]
-    f = room(lines[6] * (ay * dz - az * dy) + lines[7] * (az * dx - ax * dz) + lines[8] * (ax * dy - ay * dx),
-             lines[6] * fy + lines[7] * fx, op[ELBOW_FLEXION] * shaped(shape, 2, elbow, elevation),
+    elbow_slope, elbow_weight, moment, weight = arm_moments(op, lines, rx, ry, rz, dx, dy, dz)
+    f = room(elbow_slope, elbow_weight, op[ELBOW_FLEXION] * shaped(shape, 2, elbow, elevation),
              op[ELBOW_EXTENSION] * shaped(shape, 3, elbow, elevation))  # fmt: skip
     if f < best:
         best, code = f, LIMIT_ELBOW
-    moment = (ry * dz - rz * dy, rz * dx - rx * dz, rx * dy - ry * dx)
-    weight = (fy + GRAVITY * upper * lines[1], fx - GRAVITY * upper * lines[0])
     best, code = shoulder_limit(op, shape, arm, moment, weight, elbow, elevation, best, code)
     return best, code, 2.0 * (1.0 + lines[2]) + bent + 0.5 * (1.0 - cos_swivel)
 
