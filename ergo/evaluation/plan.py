@@ -10,6 +10,7 @@ from ergo.arm.body import Support
 from ergo.datasets import Library
 from ergo.evaluation.machine import MM, Machine, machine_of
 from ergo.people.operators import Operators, draw
+from ergo.rating.reasons import IMMOVABLE_N
 from ergo.strength.grip import grip_capability
 from ergo.strength.hand_capability import Bench, HandTask, Workplace, pack
 from ergo.strength.repetition import Repetition, repetition
@@ -45,7 +46,7 @@ def plan(study: Study, library: Library, operators: Operators | None = None) -> 
         work_dir=drive.work_dir,
         grip_axis=drive.grip_axis,
         ball=machine.ball,
-        demand_n=np.where(np.isfinite(drive.demand_n), drive.demand_n, 1e6),
+        demand_n=np.where(np.isfinite(drive.demand_n), drive.demand_n, IMMOVABLE_N),
         share=repeated.share,
         margin_min=study.targets.margin_min,
     )

@@ -54,9 +54,11 @@ def stroke_chart(results: Results) -> list[str]:
     """Return the stroke chart: needed force against allowed force of weak, middling and strong operators."""
     s = results.stroke
     at = np.linspace(0.0, 1.0, CHART_WIDTH)
-    curves = {name: np.interp(at, s.stroke, s.allowed_n[name]) for name, _, _ in MARKS}
+    curves = {name: np.interp(at, s.stroke, s.allowed_n[name]) for name in ("men_p95", "women_p50", "women_p05", "men_p50")}
     need = np.interp(at, s.stroke, np.where(np.isfinite(s.demand_n), s.demand_n, np.nan))
-    top = _round_up(max(1.25 * float(np.nanmax(np.maximum(need, 0.0))), float(np.median(curves["women_p50"])), 10.0))
+    # One sex may not be drawn, and a wedged slide has no needed force at all: only numbers set the scale.
+    middles = [float(np.median(curves[name])) for name in ("women_p50", "men_p50")]
+    top = _round_up(float(np.nanmax([*(1.25 * need), *middles, 10.0])))
     rows = [[" "] * CHART_WIDTH for _ in range(CHART_HEIGHT)]
     for name, mark, _ in MARKS:
         _draw(rows, curves[name], top, mark)
@@ -67,7 +69,8 @@ def stroke_chart(results: Results) -> list[str]:
         lines.append(f"{value:7.0f} ┤" + "".join(row) if n % 3 == 0 else "        │" + "".join(row))
     lines.append("        └" + "─" * CHART_WIDTH)
     lines.append("         0 %" + "stroke".center(CHART_WIDTH - 8) + "100 %")
-    lines.append("         █ needed   x women P5   + women P50   o men P95 (allowed, after repetition)")
+    lines.append("         █ needed   x women P5   + women P50   o men P95")
+    lines.append("         (the people's forces as repetition leaves them)")
     return lines
 
 
@@ -94,7 +97,8 @@ def left_out_lines(results: Results) -> list[str]:
         rows.append((float(np.mean(mask)), limit, women, men, float(np.median(crowd.worst_stroke[mask]))))
     for share, limit, women, men, where in sorted(rows, reverse=True):
         lines.append(
-            f"  {100 * share:5.1f} %  {limit:<36} women {100 * women:5.1f} %  men {100 * men:5.1f} %  at {100 * where:3.0f} %"
+            f"  {100 * share:5.1f} %  {textwrap.shorten(limit, 33, placeholder='...'):<33}"
+            f"  women {100 * women:3.0f} %  men {100 * men:3.0f} %  at {100 * where:3.0f} %"
         )
     return lines
 

@@ -5,6 +5,7 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 Flags = NDArray[np.bool_]
+IMMOVABLE_N = 1e6  # stands for the needed force where no force is enough
 LIMIT_WORDS = {
     "raising or lowering the upper arm": "the shoulder, raising or lowering the upper arm",
     "moving the upper arm across": "the shoulder, moving the upper arm across",
@@ -72,6 +73,8 @@ def force(share: float, lost: Flags, women: Flags, where: float, cause: str, dem
     """Say who cannot give the force, where and what limits them."""
     if share >= 1.0:
         return "Everyone who reaches can give the needed force as often as the job repeats."
+    if demand_n >= IMMOVABLE_N:
+        return f"{who(lost, women)} reach, but no hand force moves the lever at {percent(where)} of the stroke: it is wedged."
     return (f"{who(lost, women)} reach but fall short of the needed force; most at {percent(where)} of the stroke"
             f" ({demand_n:.0f} N needed), held back by {words(cause)}.")  # fmt: skip
 

@@ -250,6 +250,7 @@ def test_a_wedged_slide_is_told_in_a_sentence():
     results = judged("gasket_punch", *changes)
     assert not results.meets
     assert ratings(results)["served"] == 0.0
+    assert "no hand force moves the lever" in results.ratings["force"].reason
     assert any("wedges" in sentence and "overhang" in sentence for sentence in results.reasons)
     assert json.loads(bytes_of(results))["stroke"][0]["demand_n"] is None
 
