@@ -10,6 +10,8 @@
     change: 0,        // last change of the work that this tab has seen
     busy: false,      // an edit made while dragging waits for its picture
     held: null,       // the newest edit made while busy
+    echoes: {},       // values that the page itself has put into controls
+    typing: null,     // what is being typed and not taken up yet
     dragging: false,
     lastKey: 0,
     drawn: null,      // what the last pictures carried
@@ -25,6 +27,20 @@
   const skip = () => window.dash_clientside.no_update;
   const byId = (id) => document.getElementById(id);
   const partId = (type, path) => document.getElementById(JSON.stringify({ path: path, type: type }));
+
+  /* The page sets controls itself; what they say back then is an echo, not a hand. */
+  function put(type, path, value) {
+    const key = type + " " + path;
+    (board.echoes[key] = board.echoes[key] || []).push({ value: value, until: performance.now() + 3000 });
+    setProps(idOf(type, path), typeof value === "boolean" ? { checked: value } : { value: value });
+  }
+
+  function isEcho(id, value) {
+    const list = (board.echoes[id.type + " " + id.path] || []).filter((echo) => echo.until > performance.now());
+    const at = list.findIndex((echo) => same(echo.value, value));
+    board.echoes[id.type + " " + id.path] = list.slice(at + 1);
+    return at >= 0;
+  }
 
   /* ---- sending ---- */
 
@@ -87,20 +103,41 @@
       let id;
       try { id = JSON.parse(hit.prop_id.slice(0, cut)); } catch (error) { continue; }
       const value = hit.value;
-      if (value === undefined || value === null) continue;
-      if (same(board.known[id.path], value)) continue;
+      if (value === undefined || value === null || isEcho(id, value)) continue;
+      if (same(board.known[id.path], value)) {
+        if (board.typing && board.typing.path === id.path) board.typing = null;
+        continue;
+      }
       if (id.type === "slider") {
-        const twin = partId("value", id.path);
-        if (twin) setProps(idOf("value", id.path), { value: value });
+        if (partId("value", id.path)) put("value", id.path, value);
         board.set(id.path, value, gesture());
       } else {
-        const slider = partId("slider", id.path);
-        if (slider && typeof value === "number") setProps(idOf("slider", id.path), { value: value });
-        board.set(id.path, value, "rest");
+        if (partId("slider", id.path) && typeof value === "number") put("slider", id.path, value);
+        typed(id.path, value, partId("value", id.path));
       }
     }
     return skip();
   };
+
+  /* Typing is taken up when it pauses, or when the field is left; a choice at once. */
+  function typed(path, value, field) {
+    board.typing = { path: path, value: value };
+    clearTimeout(board.typeTimer);
+    if (field && field === document.activeElement && !field.readOnly && field.type !== "checkbox") {
+      board.typeTimer = setTimeout(takeTyped, 350);
+    } else {
+      takeTyped();
+    }
+  }
+
+  function takeTyped() {
+    const pending = board.typing;
+    board.typing = null;
+    clearTimeout(board.typeTimer);
+    if (pending) board.set(pending.path, pending.value, "rest");
+  }
+
+  document.addEventListener("focusout", () => setTimeout(takeTyped, 0));
 
   /* A slider that a finger or a held key moves is still moving; a single key press is a change at rest. */
   function gesture() {
@@ -136,7 +173,8 @@
   document.addEventListener("pointerup", () => {
     if (!board.dragging) return;
     board.dragging = false;
-    if (board.number !== board.draggedFrom || board.held) setTimeout(rest, 0);
+    // The slider's last word comes a frame or two after the finger has left it.
+    if (board.number !== board.draggedFrom || board.held) setTimeout(rest, 40);
   }, true);
 
   /* ---- what arrives ---- */
@@ -159,12 +197,13 @@
     }
     const waiting = new Set(board.unheard.filter((e) => e.do === "set").map((e) => e.path));
     if (board.held && board.held.do === "set") waiting.add(board.held.path);
+    if (board.typing) waiting.add(board.typing.path);
     for (const [path, value] of Object.entries(state.values)) {
       if (waiting.has(path) || same(board.known[path], value)) continue;
       board.known[path] = value;
       if (partId("value", path) || document.querySelector(`[id*='"path":"${path}"']`)) {
-        setProps(idOf("value", path), typeof value === "boolean" ? { checked: value } : { value: value });
-        if (partId("slider", path) && typeof value === "number") setProps(idOf("slider", path), { value: value });
+        put("value", path, value);
+        if (partId("slider", path) && typeof value === "number") put("slider", path, value);
       }
     }
     tellProblems(state);
@@ -380,8 +419,8 @@
     const value = Math.round(p.start + p.change(p.from, at));
     tag(event, label(p.path) + " " + value + (p.path.endsWith("_deg") ? "°" : "\u202fmm"));
     if (value === board.known[p.path]) return;
-    setProps(idOf("value", p.path), { value: value });
-    if (partId("slider", p.path)) setProps(idOf("slider", p.path), { value: value });
+    put("value", p.path, value);
+    if (partId("slider", p.path)) put("slider", p.path, value);
     board.set(p.path, value, "drag");
   });
 

@@ -195,7 +195,6 @@ def _number_input(path: str, name: str, row: dict[str, Any], value: Any, *, prob
         suffix=f"\u202f{row['unit']}" if row["unit"] and len(row["unit"]) < 5 else "",
         step=window(row, value)[2] if row["low"] is not None else 1,
         clampBehavior="none",
-        debounce=350,
         hideControls=True,
         size="xs",
         error=problem or None,
@@ -246,9 +245,9 @@ def _worded(path: str, row: dict[str, Any], value: Any, problem: str) -> list[An
         choices: list[Any] = list(dict.fromkeys([*row["choices"], *([value] if value else [])]))
         body = dmc.Select(data=choices, value=value, allowDeselect=False, error=problem or None, **common)
     elif row["name"] == "notes":
-        body = dmc.Textarea(value=str(value), debounce=500, autosize=True, error=problem or None, **common)
+        body = dmc.Textarea(value=str(value), autosize=True, error=problem or None, **common)
     else:
-        body = dmc.TextInput(value=str(value), debounce=500, error=problem or None, **common)
+        body = dmc.TextInput(value=str(value), error=problem or None, **common)
     return [body, html.P(range_words(row), className="help")]
 
 

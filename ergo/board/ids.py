@@ -27,6 +27,8 @@ class Id(StrEnum):
     EXPORT_SAYS = "export-says"
     RASTER = "raster"
     REPORT = "report"
+    REPORT_JOB = "report-job"
+    REPORT_TICK = "report-tick"
     REPORT_SAYS = "report-says"
     SAVE_NAME = "save-name"
     SAVE_SAYS = "save-says"

@@ -62,7 +62,7 @@ class Served:
 
 def serve(tmp_path, engine, **more):
     """Start a board on a free port; return it and what stops it."""
-    from waitress.server import create_server
+    from werkzeug.serving import make_server
 
     from ergo.board.app import create_app
 
@@ -72,8 +72,9 @@ def serve(tmp_path, engine, **more):
     folder = tmp_path / "folder"
     folder.mkdir(exist_ok=True)
     app = create_app(evaluate=engine, store_folder=tmp_path / "store", study_folder=folder, port=port, start=True, **more)
-    server = create_server(app.server, host="127.0.0.1", port=port, threads=12)
-    thread = threading.Thread(target=server.run, daemon=True)
+    server = make_server("127.0.0.1", port, app.server, threaded=True)
+    server.daemon_threads = True
+    thread = threading.Thread(target=server.serve_forever, kwargs={"poll_interval": 0.05}, daemon=True)
     thread.start()
     return Served(app, f"http://127.0.0.1:{port}", engine, tmp_path / "store", folder), server
 
@@ -87,7 +88,8 @@ def engine():
 def board(tmp_path, engine):
     made, server = serve(tmp_path, engine, make_report=lambda results, against=(): b"%PDF-1.7 made\n")
     yield made
-    server.close()
+    server.shutdown()
+    server.server_close()
 
 
 @pytest.fixture(scope="session")

@@ -12,6 +12,8 @@ from ergo.board import drawings, opening
 from ergo.board.callbacks.answers import results_of
 from ergo.board.guard import work_key
 from ergo.board.ids import Id, Part
+from ergo.board.jobs import Job
+from ergo.board.layouts import search
 from ergo.board.room import Room
 from ergo.board.store import Work
 from ergo.errors import PullwardError
@@ -24,6 +26,7 @@ def register(app: Dash, room: Room) -> None:
     """Make exports work on every page that offers them."""
     _export(app, room)
     _save(app, room)
+    _report(app, room)
 
 
 def _export(app: Dash, room: Room) -> None:
@@ -79,6 +82,51 @@ def _save(app: Dash, room: Room) -> None:
         "function(sent) { return dash_clientside.board.raster(sent); }",
         Output(Id.HEARD, "data", allow_duplicate=True), Input(Id.RASTER, "data"), prevent_initial_call=True,
     )  # fmt: skip
+
+
+def _report(app: Dash, room: Room) -> None:
+    """Make the report in the background, and hand it out when it is done."""
+
+    @app.callback(
+        Output(Id.REPORT_JOB, "data"),
+        Input(Id.REPORT, "n_clicks"),
+        State(Id.VARIANT, "value"),
+        State(Id.TAB, "data"),
+        prevent_initial_call=True,
+    )
+    def start(clicks: int, variant: str, tab: str) -> str:
+        work, make = room.store.work(work_key()), room.make_report
+        if not clicks or make is None or work.draft is None or work.draft.good is None:
+            raise PreventUpdate
+
+        def made(job: Job) -> bytes:
+            job.tell(0.1, "judging the study")
+            results = results_of(room, work, variant, tab)
+            job.tell(0.7, "writing the report")
+            return make(results)
+
+        return room.jobs.start(work.key, "report", made).key
+
+    @app.callback(
+        Output(Id.REPORT_SAYS, "children"),
+        Output(Id.REPORT_TICK, "disabled"),
+        Output(Id.DOWNLOAD, "data", allow_duplicate=True),
+        Input(Id.REPORT_JOB, "data"),
+        Input(Id.REPORT_TICK, "n_intervals"),
+        prevent_initial_call=True,
+    )
+    def watch(key: str | None, _: int) -> tuple[Any, bool, Any]:
+        if not key:
+            raise PreventUpdate
+        work = room.store.work(work_key())
+        job = room.jobs.of(work.key, key)
+        if job is None:
+            return "The report is lost: the board was started anew. Make it again.", True, no_update
+        if not job.done.is_set():
+            return search.progress(job), False, no_update
+        if job.trouble:
+            return f"No report: {job.trouble}", True, no_update
+        return "The report is in your downloads.", True, dcc.send_bytes(job.result, f"{file_stem(work)}_report.pdf")
 
 
 def exported(kind: str, what: str, results: Results, stem: str) -> Any:

@@ -54,7 +54,7 @@ def table(work: Work, reference: str) -> Any:
                       className="lead")  # fmt: skip
     first = next((k for k in work.kept if k.key == reference), work.kept[0])
     names = [n for n in RATING_NAMES if n in first.summary["ratings"]]
-    columns = ("placement", "verdict", *(label(n) for n in names), "serves more than the reference", "")
+    columns = ("placement", "verdict", *(label(n) for n in names), "serves more than the reference", "what to do")
     head = html.Thead(html.Tr([html.Th(c, scope="col") for c in columns]))
     rows = [_row(n, kept, first, names) for n, kept in enumerate(work.kept)]
     return html.Div(html.Table([html.Caption("Kept placements; the solid square marks a rating below its target"), head,

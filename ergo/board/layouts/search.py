@@ -65,7 +65,7 @@ def table(job: Job, path: str, words: str) -> Any:
         return []
     names = [n for n in RATING_NAMES if any(n in r.get("ratings", {}) for r in job.rows)]
     marked = set(best(job.rows))
-    head = html.Tr([html.Th(c, scope="col") for c in (words, "verdict", *map(label, names), "")])
+    head = html.Tr([html.Th(c, scope="col") for c in (words, "verdict", *map(label, names), "what to do")])
     body = [_row(n, row, names, path, n in marked) for n, row in enumerate(job.rows)]
     count = next((r["count"] for r in job.rows if "count" in r), 0)
     caption = html.Caption(f"Judged with {count} operators; the rows set off meet every target, or serve most")

@@ -55,6 +55,8 @@ def _report(report: bool) -> html.Section:
             html.P("The reasoning behind this lever as a PDF, for the machine's design file."),
             html.Button("Make the report", id=Id.REPORT, n_clicks=0),
             html.Div(id=Id.REPORT_SAYS, role="status"),
+            dcc.Store(id=Id.REPORT_JOB),
+            dcc.Interval(id=Id.REPORT_TICK, interval=300, disabled=True),
         ],
         className="figure",
     )
