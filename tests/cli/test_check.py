@@ -164,6 +164,7 @@ def test_a_slide_that_is_wedged_throughout_is_told_in_words(study, share, capsys
     said = " ".join(capsys.readouterr().out.split())
     assert "the slide wedges at stroke" in said
     assert "no hand force moves the lever at" in said
+    assert "EN 1005-3 has nothing to say" in said
     assert not re.search(r"\b(nan|inf|1000000)\b", said)
 
 
