@@ -14,8 +14,9 @@ from ergo.arm.kernels import (
 )  # fmt: skip
 from ergo.arm.posture_search import NEVER, judge_posture, look_everywhere, look_for_ease, look_from, prepare
 
-STANCES_X, STANCES_Y, STARTS = 6, 6, 4
+STANCES_X, STANCES_Y, STARTS = 6, 5, 3
 FULL_LOOK_EVERY = 5
+COARSE = 0.02  # steps of the search where a position does not decide
 HOPELESS = 0.85  # a short look this far below the floor is not followed by a full one
 STANCE_COMPASS = np.array(
     [[1, 0], [-1, 0], [0, 1], [0, -1], [1, 1], [-1, -1], [1, -1], [-1, 1]], dtype=np.float64
@@ -114,19 +115,22 @@ def follow_strongest(op, shape, scene, limits, stance, targets, found):
     trial = np.zeros(5)
     for p in range(count):
         if p % FULL_LOOK_EVERY == 0 or p == count - 1:
-            look_everywhere(op, shape, scene, limits, stance[0], stance[1], targets[p], found[p], 0.004, NO_LIMIT)
+            look_everywhere(op, shape, scene, limits, stance[0], stance[1], targets[p], found[p], COARSE, NO_LIMIT)
     for p in range(count):
         if p % FULL_LOOK_EVERY == 0 or p == count - 1:
             continue
         found[p, 3] = -1e9
         after = min(p + FULL_LOOK_EVERY - p % FULL_LOOK_EVERY, count - 1)
         for start in (p - 1, after):
+            # The second neighbour is only asked where the first leads to less than either has.
+            if found[p, 3] >= 0.98 * min(found[p - 1, 3], found[after, 3]) and found[p, 3] > 0.0:
+                break
             trial[:] = found[start]
-            look_from(op, shape, scene, limits, stance[0], stance[1], targets[p], trial, 0.04, 0.004, NO_LIMIT)
+            look_from(op, shape, scene, limits, stance[0], stance[1], targets[p], trial, 0.04, COARSE, NO_LIMIT)
             if trial[3] > found[p, 3]:
                 found[p, :] = trial
         if found[p, 3] < 0.0:
-            look_everywhere(op, shape, scene, limits, stance[0], stance[1], targets[p], found[p], 0.004, NO_LIMIT)
+            look_everywhere(op, shape, scene, limits, stance[0], stance[1], targets[p], found[p], COARSE, NO_LIMIT)
 
 
 @bare
@@ -169,6 +173,9 @@ def serve_operator(op, shape, scene, limits, window, targets, weights, needs, ou
             margin = strongest[p, 3] * weights[p] if strongest[p, 3] >= 0.0 else strongest[p, 3]
             if margin < worst:
                 worst, where = margin, p
+        look_everywhere(op, shape, scene, limits, stance[0], stance[1], targets[where], strongest[where], 0.004, NO_LIMIT)
+        if strongest[where, 3] >= 0.0:
+            worst = strongest[where, 3] * weights[where]
         if chosen[where] or worst >= promised * (0.99 if promised > 0.0 else 1.01):
             break
         chosen[where] = True
