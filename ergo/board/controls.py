@@ -176,7 +176,8 @@ def window(row: dict[str, Any], value: Any) -> tuple[float, float, float]:
     full = high - low
     middle = float(value) if isinstance(value, (int, float)) else low + full / 2.0
     half = max(0.6 * abs(middle), _HALF_WINDOW.get(row["unit"], full / 20.0))
-    step = _STEP.get(row["unit"], 10.0 ** math.floor(math.log10(max(min(full, 2.0 * half), 1e-9) / 80.0)))
+    fine = 10.0 ** math.floor(math.log10(max(min(full, 2.0 * half), 1e-9) / 80.0))
+    step = _STEP.get(row["unit"], fine) if full > 40.0 else fine
     if full <= 2.0 or full <= 2.0 * half:
         return low, high, step if row["kind"] != "whole" else max(step, 1.0)
     middle = min(max(middle, low), high)

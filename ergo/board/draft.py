@@ -62,6 +62,8 @@ def set_at(data: dict[str, Any], path: str, value: Any) -> dict[str, Any]:
         if not isinstance(place, list) or last >= len(place):
             raise KeyError(path)
         place[last] = "" if value is None else value
+    elif not isinstance(place, dict):
+        raise KeyError(path)
     elif value is None:
         place.pop(last, None)
     else:

@@ -7,8 +7,8 @@ import numpy as np
 
 from ergo.board.store import MOST_KEPT, Kept, Work, new_key
 from ergo.evaluation.results import RATING_NAMES, Results, rating_row
+from ergo.explore.compare import Difference, Z
 
-NORMAL_95 = 1.959964
 LONGEST_NOTE = 400
 LONGEST_VALUE = 40
 
@@ -40,28 +40,30 @@ def summary_of(results: Results) -> dict[str, Any]:
     }
 
 
-def paired_difference(first: dict[str, Any], second: dict[str, Any]) -> tuple[float, float, float] | None:
+def paired_difference(first: dict[str, Any], second: dict[str, Any], name: str = "") -> Difference | None:
     """Return by how much the second serves more of the same people, with its 95 % interval.
 
     Parameters
     ----------
     first, second : dict
         Summaries of two kept placements.
+    name : str
+        What the second is called.
 
     Returns
     -------
-    (difference, low, high) [share], or None when the two were not judged on the same people.
+    Difference [points], or None when the two were not judged on the same people.
 
     Notes
     -----
-    Mean of the paired differences d in {-1, 0, 1}; standard error sqrt(var(d) / n).
+    Mean of the paired differences d in {-1, 0, 1}; standard error sqrt(var(d) / n), as `pullward compare` has it.
     """
     if first["people"] != second["people"] or first["count"] != second["count"]:
         return None
-    d = served_of(second).astype(float) - served_of(first).astype(float)
-    half = NORMAL_95 * float(np.std(d)) / np.sqrt(d.size)
+    d = 100.0 * (served_of(second).astype(float) - served_of(first).astype(float))
+    half = Z * float(np.sqrt(d.var(ddof=1) / d.size))
     mean = float(d.mean())
-    return mean, mean - half, mean + half
+    return Difference(name, mean, mean - half, mean + half)
 
 
 def served_of(summary: dict[str, Any]) -> np.ndarray:

@@ -153,11 +153,23 @@ def test_on_paper_there_are_no_tools_and_dark_is_light(board, new_page):
     assert pdf.startswith(b"%PDF")
 
 
-@pytest.mark.parametrize("name", PAGES)
-def test_the_caution_is_on_every_page(board, new_page, name):
+def test_the_caution_is_on_every_page(board, new_page):
     page = new_page()
     steps.open_study(page, board.address)
-    page.get_by_role("navigation").get_by_role("link", name=name, exact=True).click()
-    page.locator(READY[name]).first.wait_for(state="attached")
-    assert "no risk assessment" in page.locator(".foot").inner_text()
-    assert page.locator("text=Share chart").count() == 0
+    for name in PAGES:
+        page.get_by_role("navigation").get_by_role("link", name=name, exact=True).click()
+        page.locator(READY[name]).first.wait_for(state="attached")
+        assert "no risk assessment" in page.locator(".foot").inner_text(), name
+        assert page.locator("text=Share chart").count() == 0, name
+
+
+def test_the_first_load_is_light(board, new_page):
+    """All that a browser fetches before the main page stands, gzipped, plotly itself aside: under 1.5 MB."""
+    import gzip
+
+    page = new_page()
+    sizes = {}
+    page.on("response", lambda r: sizes.update({r.url: len(gzip.compress(r.body()))}) if r.status == 200 else None)
+    steps.open_study(page, board.address)
+    assert not any("plotly.min" in url for url in sizes)
+    assert sum(size for url, size in sizes.items() if "plotly" not in url) < 1_500_000

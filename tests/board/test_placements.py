@@ -24,13 +24,13 @@ def test_served_flags_come_back_as_they_went():
 
 
 def test_paired_difference_by_hand():
-    # Of ten people two are won and one is lost: d sums to 1, sum of squares 3, variance 0.3 - 0.01 = 0.29.
+    # Of ten people two are won and one is lost: d sums to 1, its squares to 3; variance (3 - 10 x 0.1^2) / 9.
     first = summary([1, 1, 1, 1, 0, 0, 0, 1, 1, 1])
     second = summary([1, 1, 1, 0, 1, 1, 0, 1, 1, 1])
-    mean, low, high = paired_difference(first, second)
-    assert mean == pytest.approx(0.1)
-    half = 1.959964 * (0.29 / 10) ** 0.5
-    assert (low, high) == pytest.approx((0.1 - half, 0.1 + half))
+    found = paired_difference(first, second)
+    half = 100.0 * 1.959964 * (2.9 / 9.0 / 10.0) ** 0.5
+    assert (found.points, found.low, found.high) == pytest.approx((10.0, 10.0 - half, 10.0 + half))
+    assert not found.clear
 
 
 def test_no_paired_difference_between_other_people():

@@ -92,9 +92,8 @@ def difference_words(first: Kept, kept: Kept) -> str:
     found = paired_difference(first.summary, kept.summary)
     if found is None:
         return "other people: no paired difference"
-    points = [100.0 * v for v in found]
-    span = f"{points[0]:+.1f} points, 95\u202f% interval {points[1]:+.1f} to {points[2]:+.1f}".replace("-", "−")
-    return f"{span}; no difference beyond chance" if points[1] <= 0.0 <= points[2] else span
+    span = f"{found.points:+.1f} points, 95\u202f% interval {found.low:+.1f} to {found.high:+.1f}".replace("-", "−")
+    return span if found.clear else f"{span}; no difference beyond chance"
 
 
 def _buttons(kept: Kept, name: str, *, is_first: bool) -> list[Any]:
