@@ -19,7 +19,7 @@ from ergo.arm.kernels import (
 
 COM_STEPS, BEND_STEPS, SWIVEL_STEPS = 4, 5, 15
 TOUCHING_GAP = 0.03  # m: a body this near the bench edge leans on it when braced
-FINE = 0.01  # a search to smaller steps than this also looks at every swivel
+FINE = 0.011  # a search to smaller steps than this also looks at every swivel
 NEVER = 1e9  # discomfort of a posture that does not carry what is needed
 # Compass directions in units of (com share, bend): the best posture often sits on a ridge where two limits meet.
 COMPASS = np.array([[1, 0], [-1, 0], [0, 1], [0, -1], [1, 1], [-1, -1], [1, -1], [-1, 1]], dtype=np.float64)

@@ -78,7 +78,7 @@ def best_stance(op, shape, scene, limits, window, targets, weights, visit, found
         climb_stance(op, shape, scene, limits, window, targets, weights, visit, found, row, 0.1, 0.03, 0.04)
         if row[0] > final[0]:
             final[:] = row
-    climb_stance(op, shape, scene, limits, window, targets, weights, visit, found, final, 0.03, 0.003, 0.004)
+    climb_stance(op, shape, scene, limits, window, targets, weights, visit, found, final, 0.06, 0.006, 0.008)
     stance[0], stance[1] = final[1], final[2]
     return final[0]
 
