@@ -7,8 +7,9 @@ All functions that call one another stay in this file: numba's cache follows one
 
 import math
 
-from ergo.arm import compiled  # noqa: F401, I001  (sets numba's cache folder, so it comes first)
 from numba import njit
+
+from ergo.arm import compiled  # noqa: F401  (sets numba's cache folder, so it comes first)
 
 # Columns of the operator array (n, OPERATOR_COLUMNS): body, then strengths.
 UPPER, FOREARM, WRIST, HALF_BREADTH, ANKLE_Z, LEG, TRUNK, BODY_FRONT, CHEST_HALF = range(9)

@@ -8,13 +8,40 @@ swivel; so for each of the first two the swivel is only searched until the arm g
 import math
 
 import numpy as np
-from numba import prange
 
 from ergo.arm.kernels import (
-    BALL, BEND_MAX, BEND_MIN, BODY_FRONT, CHEST_HALF, COS_ELBOW_MIN, FOREARM, FOREARM_MASS, GIRDLE_PULL, GIRDLE_PUSH,
-    HALF_BREADTH, HAND_DEPTH, HAND_MASS, LIMIT_GIRDLE, LIMIT_REACH, LIMIT_TOO_CLOSE, LIMIT_TRUNK_IN_WAY, MASS, NO_LIMIT,
-    PROTRACTION, REACH_EASE, SEATED, SWIVEL_HIGH, SWIVEL_LOW, UPPER, UPPER_MASS, WRIST, arm_lines, bare, bare_parallel,
-    front_at, hand_axis, judge_arm, place_body, shoulder_axes, stance_limit,
+    BALL,
+    BEND_MAX,
+    BEND_MIN,
+    BODY_FRONT,
+    CHEST_HALF,
+    COM_SLACK,
+    COS_ELBOW_MIN,
+    FOREARM,
+    FOREARM_MASS,
+    GIRDLE_PULL,
+    GIRDLE_PUSH,
+    HALF_BREADTH,
+    HAND_DEPTH,
+    HAND_MASS,
+    LIMIT_GIRDLE,
+    LIMIT_REACH,
+    LIMIT_TOO_CLOSE,
+    LIMIT_TRUNK_IN_WAY,
+    MASS,
+    NO_LIMIT,
+    PROTRACTION,
+    REACH_EASE,
+    SEATED,
+    SWIVEL_HIGH,
+    SWIVEL_LOW,
+    UPPER,
+    UPPER_MASS,
+    bare,
+    front_at,
+    judge_arm,
+    place_body,
+    stance_limit,
 )  # fmt: skip
 
 COM_STEPS, BEND_STEPS, SWIVEL_STEPS = 4, 5, 15
@@ -193,7 +220,9 @@ def look_from(op, shape, scene, limits, stand_x, stand_y, target, seen, step, sm
 @bare
 def look_everywhere(op, shape, scene, limits, stand_x, stand_y, target, seen, smallest, enough):
     """Strongest posture of all: a coarse look at each of a few bends, then `look_from` the best two of them."""
-    steps = 1 if scene[SEATED] > 0.0 else COM_STEPS
+    # Leaning widens the way of the centre of mass, so more places are looked at.
+    wide = COM_STEPS if scene[COM_SLACK] <= 0.0 else 2 * COM_STEPS
+    steps = 1 if scene[SEATED] > 0.0 else wide
     lines = np.zeros((BEND_STEPS, 5))
     first, second = 0, -1
     for j in range(BEND_STEPS):
@@ -201,7 +230,7 @@ def look_everywhere(op, shape, scene, limits, stand_x, stand_y, target, seen, sm
         line[2], line[3] = seen[2], -1e6
         bend = scene[BEND_MIN] + j * (scene[BEND_MAX] - scene[BEND_MIN]) / (BEND_STEPS - 1)
         for i in range(steps):
-            try_posture(op, shape, scene, limits, stand_x, stand_y, target, line, i / (COM_STEPS - 1), bend, True)
+            try_posture(op, shape, scene, limits, stand_x, stand_y, target, line, i / (wide - 1), bend, True)
         if line[3] >= enough:
             seen[:] = line
             return

@@ -10,9 +10,19 @@ import numpy as np
 from numba import prange
 
 from ergo.arm.kernels import (
-    BALL, FOREARM, NO_LIMIT, UPPER, WRIST, arm_lines, bare, bare_parallel, hand_axis, place_body, shoulder_axes,
+    BALL,
+    FOREARM,
+    NO_LIMIT,
+    UPPER,
+    WRIST,
+    arm_lines,
+    bare,
+    bare_parallel,
+    hand_axis,
+    place_body,
+    shoulder_axes,
 )  # fmt: skip
-from ergo.arm.posture_search import NEVER, judge_posture, look_everywhere, look_for_ease, look_from, prepare
+from ergo.arm.posture_search import NEVER, look_everywhere, look_for_ease, look_from, prepare
 
 STANCES_X, STANCES_Y, STARTS = 6, 5, 3
 FULL_LOOK_EVERY = 5

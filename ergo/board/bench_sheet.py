@@ -136,9 +136,29 @@ def _view(sheet: Sheet, frame: Frame, results: Results, extent: Extent, *, true:
     draw_lever(sheet, frame, results, start)
     draw_pivot(sheet, frame, results)
     draw_ribbon(sheet, frame, results)
+    if true and frame.view is SIDE:
+        _reach_lines(sheet, frame, results, extent.grown(0.6 * more, 0.0, 0.8 * more, 0.0))
     if results.study.get("lever"):
         (_true_dimensions if true else _other_dimensions)(sheet, frame, results)
     _names(sheet, frame, results, ends=true)
+
+
+def _reach_lines(sheet: Sheet, frame: Frame, results: Results, extent: Extent) -> None:
+    """How far the smallest and the largest operator can still reach, as far as it is on the sheet."""
+    top = results.study["bench"]["surface_height_mm"]
+    for n, (name, rows) in enumerate((results.details.get("reach_lines_mm") or {}).items()):
+        curve = np.asarray(rows, dtype=float).reshape(-1, 3)
+        flat = frame.view.flat(curve)
+        seen = (flat >= extent.low).all(axis=1) & (flat <= extent.high).all(axis=1) & (curve[:, 2] >= top)
+        if seen.sum() < 3:
+            continue
+        dash = theme.WOMEN_DASH if "wom" in name else theme.MEN_DASH
+        runs = np.split(np.arange(len(curve)), np.flatnonzero(np.diff(seen.astype(int))) + 1)
+        for run in runs:
+            if seen[run[0]]:
+                sheet.line(frame.flat_at(flat[run]), stroke=sheet.ink.grey, dash=dash)
+        place = frame.flat_at(flat[seen][-1 - n])
+        sheet.words(place + [-4.0, 10.0], f"reach, {name}", size=theme.SMALL, anchor="end", halo=True, fill=sheet.ink.grey)
 
 
 def _names(sheet: Sheet, frame: Frame, results: Results, *, ends: bool) -> None:
@@ -223,7 +243,9 @@ def _other_dimensions(sheet: Sheet, frame: Frame, results: Results) -> None:
     pivot = frame.at(np.array([x, y, z]))
     if frame.view is PLAN and abs(x) >= SHORTEST_MM:
         middle = frame.at(np.array([0.0, y, z]))
-        length_dimension(sheet, middle, pivot, f"{figure(x)} right", away=34.0, key="lever.pivot_mm[0]")
+        away = OTHER_CELL[0] + OTHER_CELL[2] - 26.0 - float(pivot[0])
+        word = "right" if x > 0 else "left"
+        length_dimension(sheet, middle, pivot, f"{figure(abs(x))} {word}", away=away if x > 0 else -away, key="lever.pivot_mm[0]")
     elif frame.view is PLAN_FRONT and abs(y) >= SHORTEST_MM:
         edge = frame.at(np.array([x, 0.0, z]))
         length_dimension(sheet, edge, pivot, f"{figure(y)} from edge", away=-26.0, key="lever.pivot_mm[1]")

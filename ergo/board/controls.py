@@ -199,7 +199,7 @@ def _number_input(path: str, name: str, row: dict[str, Any], value: Any, *, prob
         hideControls=True,
         size="xs",
         error=problem or None,
-        allowDecimal=True,
+        placeholder="" if row["required"] or row["default"] is not None else "not set",
         **extra,
     )
 

@@ -3,13 +3,14 @@
 import dataclasses
 
 from ergo.board.bench_sheet import BenchSheet, bench_sheet, operators_corner
+from ergo.board.let_go_sheet import overrun_drawing
 from ergo.evaluation.results import Results
 from ergo.pictures import bench_view, left_out_view, operators_view, ratings_view, stroke_view, theme
 from ergo.pictures.sheet import Drawing
 from ergo.pictures.theme import Ink
 
 # Sheets for a wide screen and for one held in the hand; words keep their size on both.
-WIDE, NARROW = 560.0, 380.0
+WIDE, NARROW = 560.0, 440.0
 BANDS = ("var(--band-1)", "var(--band-2)", "var(--band-3)")
 
 
@@ -63,6 +64,11 @@ def left_out_strip(results: Results, width: float = WIDE) -> Drawing:
     return left_out_view.strip_drawing(results, PAGE, width=width, height=230.0)
 
 
+def overrun(results: Results, width: float = WIDE) -> Drawing:
+    """Return how far the handle runs on, let go at any position."""
+    return overrun_drawing(results, PAGE, width=width)
+
+
 def named(name: str, results: Results) -> Drawing:
     """Return a drawing to take away by its name, in print inks; KeyError for a name that is not one."""
     made = {
@@ -72,6 +78,8 @@ def named(name: str, results: Results) -> Drawing:
         "left_out_strip": left_out_view.strip_drawing,
         "ratings": ratings_view.ratings_drawing,
     }
+    if name == "overrun":
+        return overrun_drawing(results, theme.PRINT, width=WIDE)
     if name == "operators":
         return operators_view.operators_drawing(results, ink=theme.PRINT)
     return made[name](results, theme.PRINT)

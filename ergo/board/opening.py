@@ -2,6 +2,7 @@
 
 import base64
 import binascii
+import itertools
 import re
 import shutil
 import tomllib
@@ -17,18 +18,27 @@ NEW = ":new"
 _FILE_NAME = re.compile(r"[\w][\w .+()-]{0,79}")
 
 
-def shipped() -> dict[str, str]:
-    """Return the shipped studies and a new one, by name, with their titles."""
-    found = {path.stem: _title(path) for path in sorted((folder("datasets") / "studies").glob("*.toml"))}
-    return {**found, NEW: "A new study"}
+def shipped() -> dict[str, tuple[str, str]]:
+    """Return the shipped studies and a new one, by name: title, and what it is in a sentence."""
+    places = sorted((folder("datasets") / "studies").glob("*.toml"))
+    found = {path.stem: (_title(path), first_sentence(path)) for path in places}
+    return {**found, NEW: ("A new study", "A plain lever with every key at its default.")}
 
 
-def in_folder(place: Path | None) -> dict[str, str] | None:
+def first_sentence(path: Path) -> str:
+    """Return the first sentence of the comment that a study file begins with, its file name where there is none."""
+    lines = path.read_text(encoding="utf-8", errors="replace").splitlines()
+    head = itertools.takewhile(lambda line: line.startswith("#"), lines)
+    text = " ".join(line.lstrip("# ") for line in head)
+    return text.partition(". ")[0].rstrip(".")[:200] + "." if text else path.name
+
+
+def in_folder(place: Path | None) -> dict[str, tuple[str, str]] | None:
     """Return the studies of the folder given, None without one; links that lead out of it are not there."""
     if place is None:
         return None
     inside = [p for p in sorted(place.glob("*.toml")) if p.resolve().parent == place.resolve() and p.is_file()]
-    return {path.name: _title(path) for path in inside[:200]}
+    return {path.name: (_title(path), path.name) for path in inside[:200]}
 
 
 def open_shipped(work: Work, name: str, tab: str) -> None:

@@ -165,8 +165,8 @@ def jolt_sentence(made: Plan, run: hand.HandRun, at: int) -> str:
     fist = contact.Region.from_library(made.library, "hand_fingers")
     blow = contact.strike(fist, run.speed_m_s[:, at], run.moving_mass_kg[:, at], run.press_n[:, at], region_is_held=True)
     peak, energy = np.median(blow.peak_n[stopped]), np.median(blow.energy_j[stopped])
-    return (f"Where the handle meets its stop the jolt is about {peak:.0f} N and {energy:.1f} J in the middle (limit for a blow to"
-            f" the hand {fist.transient_n:.0f} N, status {fist.status}); a soft stop lowers it.")  # fmt: skip
+    return (f"Where the handle meets its stop the jolt is about {peak:.0f} N and {energy:.1f} J in the middle (limit for a blow"
+            f" to the hand {fist.transient_n:.0f} N, status {fist.status}); a soft stop lowers it.")  # fmt: skip
 
 
 def _way_to_zone(made: Plan, gap: Gaps) -> Array:
@@ -205,6 +205,9 @@ def _details(made: Plan, run: hand.HandRun, stands: body.Balance, at: int, asked
              hurt: float) -> dict[str, Any]:  # fmt: skip
     """Return the figures of the judged position, and sentences in plain words."""
     low, middle, high = run.band(run.overrun_m)[:, at] * 1e3
+    if not np.isfinite(middle):
+        return {"sentences": ["Let-go is not covered: nobody holds the handle there, or no hand force moves it."],
+                "asked": asked is not None, "at_stroke": float(made.machine.drive.stroke[at])}  # fmt: skip
     speed = run.band(run.peak_speed_m_s)[1, at]
     shares, toward = {n: float(v[at]) for n, v in stands.shares().items()}, stands.shares_toward()
     met = {name: float(v[at]) for name, v in run.met_shares().items()}

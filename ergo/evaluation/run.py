@@ -103,9 +103,7 @@ def _results(made: Plan, capability: HandCapability, posture: Posture, gap: Gaps
     ratings = rate(made, capability, posture, gap, gone, counted)
     short = [name for name, rating in ratings.items() if not rating.met]
     strong, turned, touched = strong_end(made, capability), twisting(made, capability, posture), touching(made, posture)
-    extra = [*gone.tables, "clearance_parameters", "body_regression", "mass_on_stature"]
-    extra += [*(STRONG_TABLES if study.structure else ()), *(TWIST_TABLES if study.grip.turns else ())]
-    used = numbers_used(made.library, study.operators.population, extra)
+    used = numbers_used(made.library, study.operators.population, _further_tables(study, gone))
     title = study.study.title + (f" ({study.variant_name})" if study.variant_name else "")
     said = [reasons.verdict(title, short), *second.sentences, *_work_sentences(made), gone.details["feel"], gone.details["screw"],
             *turned["sentences"], *touched["sentences"], *strong["sentences"], *made.machine.drive.notes]
@@ -123,11 +121,7 @@ def _results(made: Plan, capability: HandCapability, posture: Posture, gap: Gaps
         cautions=reasons.cautions(memory_tables(used)),
         sources=used,
         details={
-            "repetition": {
-                "share": made.repetition.share,
-                "duty_cycle": made.repetition.duty_cycle,
-                "governs": made.repetition.governs,
-            },
+            "repetition": _repetition_row(made),
             "let_go": gone.details,
             "strong_end": strong,
             "twist": turned,
@@ -139,6 +133,17 @@ def _results(made: Plan, capability: HandCapability, posture: Posture, gap: Gaps
         },
         manifest=manifest(study.digest(), study.operators.seed, made.library),
     )
+
+
+def _further_tables(study: Study, gone: Release) -> list[str]:
+    """Return the tables that this study needs beside those that every study does."""
+    found = [*gone.tables, "clearance_parameters", "body_regression", "mass_on_stature"]
+    return [*found, *(STRONG_TABLES if study.structure else ()), *(TWIST_TABLES if study.grip.turns else ())]
+
+
+def _repetition_row(made: Plan) -> dict[str, object]:
+    r = made.repetition
+    return {"share": r.share, "duty_cycle": r.duty_cycle, "governs": r.governs}
 
 
 def _work_sentences(made: Plan) -> list[str]:

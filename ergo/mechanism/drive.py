@@ -99,16 +99,15 @@ def drive(
     """
     linkage = _moving(lever, linkage, friction)
     a, way, sense = path.lever_rad, lever.way, travel_sense(lever, linkage)
-    slide = slide_travel_m(lever, linkage, a)
+    slide, dead = slide_travel_m(lever, linkage, a), linkage.dead_centres_rad(lever.start_rad, lever.end_rad)
     force = np.broadcast_to(np.asarray(load(slide), dtype=float), slide.shape).copy()
     ratio = sense * way * linkage.slide_per_rad_m(a) / lever.length_m
     weight = -way * (lever.weight_torque_nm(a) + lever.spring_torque_nm(a)) / lever.length_m
     full = hand_balance(lever, linkage, a, way, sense * force, friction)
     rubbed = np.zeros_like(slide) if friction.is_none else full.hand_n - (ratio * force + weight)
     loaded = hand_balance(lever, linkage, a, way, sense * force, friction, with_weight=False)
-    back = hand_balance(lever, linkage, a, -way, sense * force, friction, with_weight=False)
-    forward_eff, back_eff, locks = _efficiencies(ratio * force, loaded.hand_n, -back.hand_n, friction)
-    dead = linkage.dead_centres_rad(lever.start_rad, lever.end_rad)
+    back_n = -hand_balance(lever, linkage, a, -way, sense * force, friction, with_weight=False).hand_n
+    forward_eff, back_eff, locks = _efficiencies(ratio * force, loaded.hand_n, back_n, friction)
     return Drive(
         **_path_fields(path),
         slide_m=slide,

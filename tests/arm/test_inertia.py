@@ -29,9 +29,7 @@ def planar_arm(included_deg, upper=0.31, lower=0.34):
 def test_two_link_limb_of_pmc2784227(included, along, across):
     # I 0.04 and 0.06 kg m2 about the centres of mass, at 0.45 and 0.50 of links of 0.31 and 0.34 m
     radii = [np.sqrt(i / m) / length for i, m, length in ((0.04, 1.93, 0.31), (0.06, 1.52, 0.34))]
-    limb = ArmMasses(
-        *(np.array(v) for v in (1.93, 1.52, 0.45, 0.50)), np.full(3, radii[0]), np.full(3, radii[1])
-    )
+    limb = ArmMasses(*(np.array(v) for v in (1.93, 1.52, 0.45, 0.50)), np.full(3, radii[0]), np.full(3, radii[1]))
     points = planar_arm(included)
     assert hand_mass_along(*points, [1.0, 0.0, 0.0], limb) == pytest.approx(along, abs=0.006)
     assert hand_mass_along(*points, [0.0, 0.0, 1.0], limb) == pytest.approx(across, abs=0.006)

@@ -111,7 +111,9 @@ def test_a_box_seen_from_the_side_is_its_own_rectangle(short):
 @pytest.mark.parametrize("axis", ["fore-aft", "upright", [0.5, 0.5, 0.7]])
 def test_every_axis_and_every_ink_can_be_drawn(factory, axis):
     for ink in theme.INKS.values():
-        ET.fromstring(machine_drawing(factory.made(lever__axis=axis), ink).svg)
+        drawn = ET.fromstring(machine_drawing(factory.made(lever__axis=axis), ink).svg)
+        assert drawn.tag.endswith("svg")
+        assert len(list(drawn.iter())) > 50  # lever, ribbon, bench and dimensions take many more
 
 
 @pytest.mark.parametrize(

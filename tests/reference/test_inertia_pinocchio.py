@@ -65,9 +65,7 @@ def chain(shoulder, elbow, grip, masses, k):
     ):
         length = np.linalg.norm(link)
         own = np.diag(mass * (radii * length) ** 2)
-        model.appendBodyToJoint(
-            joint, pin.Inertia(mass, np.array([0, 0, com * length]), own), pin.SE3.Identity()
-        )
+        model.appendBodyToJoint(joint, pin.Inertia(mass, np.array([0, 0, com * length]), own), pin.SE3.Identity())
     at = pin.SE3(np.eye(3), np.array([0.0, 0.0, np.linalg.norm(lower)]))
     hand = model.addFrame(pin.Frame("hand", hinge, at, pin.FrameType.OP_FRAME))
     return model, hand

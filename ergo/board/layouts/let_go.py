@@ -12,7 +12,8 @@ from ergo.board.layouts.figures import figure, table
 from ergo.evaluation.results import Results
 from ergo.pictures.sheet import quantity
 
-SHARES = ("kept", "one step", "thrown")
+COLUMNS = ("let go at", "load", "handle runs on, P5", "P50", "P95", "which way", "balance kept", "one step", "thrown",
+           "smallest gap")  # fmt: skip
 
 
 def body(results: Results) -> list[Any]:
@@ -24,13 +25,26 @@ def body(results: Results) -> list[Any]:
         hint = "Set the stroke position at which the load suddenly lets go: Load, lets go at, on the Bench page."
         said = rating.reason if rating and asked else hint
         return [html.H2("No let-go is judged in this study."), html.P(said, className="lead")]
+    p = chosen(results, where)
+    told = sentences(results.details.get("let_go", {})) or ([rating.reason] if rating else [])
     return [
-        html.H2(rating.reason if rating else "The load lets go."),
-        *[html.P(text, className="lead") for text in sentences(results.details.get("let_go", {}))],
-        html.Div([figure(drawings.machine, results, "machine"), _body_share(results, where)], className="figures"),
-        table(("at", "load", "handle runs on, P5", "P50", "P95", "toward", *SHARES, "smallest gap"),
-              [_row(results, int(p)) for p in where], caption="Where the load may let go", numbers=range(1, 10)),
+        html.H2(f"When the load lets go at {100 * results.stroke.stroke[p]:.0f}\u202f% of the stroke"),
+        *[html.P(text, className="lead") for text in told],
+        table(COLUMNS, [_row(results, p)], numbers=range(1, 10)),
+        html.Div([figure(drawings.overrun, results, "overrun"), _body_share(results, p),
+                  figure(drawings.machine, results, "machine")], className="figures"),
+        html.Details([html.Summary("Let go at any other position"),
+                      table(COLUMNS, [_row(results, int(n)) for n in where], numbers=range(1, 10))]),
     ]  # fmt: skip
+
+
+def chosen(results: Results, where: Any) -> int:
+    """Return the position that the study lets go at, else the one where most are thrown."""
+    asked = results.study.get("load", {}).get("lets_go_at")
+    if asked is not None:
+        return int(where[np.argmin(np.abs(results.stroke.stroke[where] - float(asked)))])
+    thrown = results.stroke.balance[where, 2]
+    return int(where[int(np.argmax(np.where(np.isfinite(thrown), thrown, -1.0)))])
 
 
 def sentences(details: Mapping[str, Any]) -> list[str]:
@@ -45,16 +59,15 @@ def _row(results: Results, p: int) -> list[str]:
         f"{100 * s.stroke[p]:.0f}\u202f%",
         quantity(float(s.load_n[p]), "N"),
         *[quantity(float(v), "mm") for v in s.overrun_mm[p]],
-        s.overrun_toward[p],
+        s.overrun_toward[p].removeprefix("toward "),
         *[f"{100 * v:.1f}\u202f%" if np.isfinite(v) else "not covered" for v in s.balance[p]],
         quantity(float(s.gap_mm[p]), "mm"),
     ]
 
 
-def _body_share(results: Results, where: Any) -> html.Section:
+def _body_share(results: Results, p: int) -> html.Section:
     """Return the balance of the operators at the let-go as one bar, told by shade and words."""
     s = results.stroke
-    p = int(where[np.nanargmax(np.where(np.isfinite(s.balance[where, 2]), s.balance[where, 2], 0.0))])
     shares = [float(v) if np.isfinite(v) else 0.0 for v in s.balance[p]]
     parts = [
         html.Span(className=f"share share-{n}", style={"width": f"{100 * v:.2f}%"}) for n, v in enumerate(shares)

@@ -7,22 +7,17 @@ from dash import dcc, html
 from ergo.board.ids import Id, Part, of
 
 
-def page(shipped: dict[str, str], in_folder: dict[str, str] | None, *, empty: bool) -> html.Div:
+Offered = dict[str, tuple[str, str]]
+
+
+def page(shipped: Offered, in_folder: Offered | None, *, empty: bool) -> html.Div:
     """Return the page; `in_folder` is None when the board was started without a folder."""
     lead = (
         "Open a study and change it by hand. What you do is kept on this computer after every step."
         if empty
         else "The study in the fields stays one undo away."
     )
-    parts: list[Any] = [
-        html.H2("Start with a study" if empty else "Open another study"),
-        html.P(lead, className="lead"),
-        html.H3("Shipped studies"),
-        _list(shipped, Part.SHIPPED),
-    ]
-    if in_folder is not None:
-        parts += [html.H3("In the folder"), _list(in_folder, Part.IN_FOLDER) if in_folder else html.P("No study there yet.")]
-    parts += [
+    own: list[Any] = [
         html.H3("Your own file"),
         html.P("A study file (.toml), together with the CSV files that it names; up to 1 MB each."),
         html.Label(
@@ -31,11 +26,27 @@ def page(shipped: dict[str, str], in_folder: dict[str, str] | None, *, empty: bo
         ),
         html.Div(id=Id.UPLOAD_SAYS, role="status", className="problems"),
     ]  # fmt: skip
-    return html.Div(parts, className="page opening")
+    if in_folder is not None:
+        there = _list(in_folder, Part.IN_FOLDER) if in_folder else html.P("No study there yet.")
+        own += [html.H3("In the folder"), there]
+    return html.Div(
+        [
+            html.H2("Start with a study" if empty else "Open another study"),
+            html.P(lead, className="lead"),
+            html.Div(
+                [html.Section([html.H3("Shipped studies"), _list(shipped, Part.SHIPPED)]), html.Section(own)],
+                className="figures",
+            ),
+        ],
+        className="page opening",
+    )
 
 
-def _list(found: dict[str, str], part: Part) -> html.Ul:
+def _list(found: Offered, part: Part) -> html.Ul:
     return html.Ul(
-        [html.Li(html.Button([html.B(title), html.Span(name)], id=of(part, name), n_clicks=0)) for name, title in found.items()],
+        [
+            html.Li(html.Button([html.B(title), html.Span(words)], id=of(part, name), n_clicks=0))
+            for name, (title, words) in found.items()
+        ],
         className="studies",
     )
