@@ -32,7 +32,8 @@ from ergo.study.template import template
 INDEX = """<!DOCTYPE html>
 <html lang="en" data-mantine-color-scheme="light">
 <head>{%metas%}<meta name="viewport" content="width=device-width, initial-scale=1">
-<title>Pullward</title><link rel="icon" href="/assets/mark.svg" type="image/svg+xml">{%css%}<link rel="stylesheet" href="/inks.css"></head>  # noqa: E501
+<title>Pullward</title><link rel="icon" href="/assets/mark.svg" type="image/svg+xml">
+{%css%}<link rel="stylesheet" href="/inks.css"></head>
 <body>{%app_entry%}<footer class="scripts">{%config%}{%scripts%}{%renderer%}</footer></body>
 </html>"""
 
