@@ -157,8 +157,9 @@ def _reach_lines(sheet: Sheet, frame: Frame, results: Results, extent: Extent) -
         for run in runs:
             if seen[run[0]]:
                 sheet.line(frame.flat_at(flat[run]), stroke=sheet.ink.grey, dash=dash)
-        place = frame.flat_at(flat[seen][-1 - n])
-        sheet.words(place + [-4.0, 10.0], f"reach, {name}", size=theme.SMALL, anchor="end", halo=True, fill=sheet.ink.grey)
+        tip = frame.flat_at(flat[seen])[int(np.argmax(curve[seen, 2]))]
+        short = name.partition("(")[2].rstrip(")") or name
+        sheet.words(tip + [4.0, 11.0 + 12.0 * n], f"reach {short}", size=theme.SMALL, halo=True, fill=sheet.ink.grey)
 
 
 def _names(sheet: Sheet, frame: Frame, results: Results, *, ends: bool) -> None:

@@ -28,8 +28,7 @@ def overrun_drawing(results: Results, ink: Ink, *, width: float, height: float =
     sheet.line(middle, weight=theme.MACHINE)
     gap = _at(box, top, s.stroke, s.gap_mm)
     sheet.line(gap[gap[:, 1] >= box[1]], weight=theme.PATH, dash=theme.HIDDEN_DASH)
-    _name(sheet, box, middle, "handle runs on")
-    _name(sheet, box, gap[gap[:, 1] >= box[1]], "smallest gap")
+    _names(sheet, box, {"handle runs on": middle, "smallest gap": gap[gap[:, 1] >= box[1]]})
     where = results.study.get("load", {}).get("lets_go_at")
     if where is not None:
         x = box[0] + (box[2] - box[0]) * float(where)
@@ -56,10 +55,15 @@ def _axes(sheet: Sheet, box: tuple[float, ...], top: float) -> None:
     sheet.words([(box[0] + box[2]) / 2.0, box[3] + 30.0], "let go at, % of the stroke", anchor="middle", size=theme.SMALL)
 
 
-def _name(sheet: Sheet, box: tuple[float, ...], curve: Array, text: str) -> None:
-    known = curve[np.isfinite(curve).all(axis=1)]
-    if len(known):
-        sheet.words([box[2] + 6.0, float(known[-1, 1]) + 3.5], text, size=theme.SMALL, halo=True)
+def _names(sheet: Sheet, box: tuple[float, ...], curves: dict[str, Array]) -> None:
+    """Name each curve at its right end, names kept apart."""
+    ends = {name: curve[np.isfinite(curve).all(axis=1)] for name, curve in curves.items()}
+    lowest = np.inf
+    for name, curve in sorted(ends.items(), key=lambda pair: -float(pair[1][-1, 1]) if len(pair[1]) else 0.0):
+        if len(curve):
+            y = min(float(curve[-1, 1]) + 3.5, lowest - 12.0)
+            sheet.words([box[2] + 6.0, y], name, size=theme.SMALL, halo=True)
+            lowest = y
 
 
 def _row(results: Results, p: int) -> tuple[str, ...]:
@@ -71,4 +75,5 @@ def _row(results: Results, p: int) -> tuple[str, ...]:
 def _alt(results: Results) -> str:
     s = results.stroke
     p = int(np.nanargmax(s.overrun_mm[:, 2]))
-    return f"The longest run is {quantity(float(s.overrun_mm[p, 2]), 'mm')} (P95), let go at {100 * s.stroke[p]:.0f} % of the stroke."
+    longest = quantity(float(s.overrun_mm[p, 2]), "mm")
+    return f"The longest run is {longest} (P95), let go at {100 * s.stroke[p]:.0f} % of the stroke."

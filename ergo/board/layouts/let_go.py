@@ -31,7 +31,7 @@ def body(results: Results) -> list[Any]:
         html.H2(f"When the load lets go at {100 * results.stroke.stroke[p]:.0f}\u202f% of the stroke"),
         *[html.P(text, className="lead") for text in told],
         table(COLUMNS, [_row(results, p)], numbers=range(1, 10)),
-        html.Div([figure(drawings.overrun, results, "overrun"), _body_share(results, p),
+        html.Div([html.Div([figure(drawings.overrun, results, "overrun"), _body_share(results, p)]),
                   figure(drawings.machine, results, "machine")], className="figures"),
         html.Details([html.Summary("Let go at any other position"),
                       table(COLUMNS, [_row(results, int(n)) for n in where], numbers=range(1, 10))]),

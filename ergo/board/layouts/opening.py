@@ -6,7 +6,6 @@ from dash import dcc, html
 
 from ergo.board.ids import Id, Part, of
 
-
 Offered = dict[str, tuple[str, str]]
 
 
