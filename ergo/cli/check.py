@@ -62,8 +62,8 @@ def show(results: "Results") -> None:
     _section(console, "What decides it, and what is not known", terminal.wrapped(results.reasons[1:]))
     flips = results.details.get("flips")
     if flips is not None:
-        sentences = [f["sentence"] for f in flips] or ["No recalled or derived number alone would flip a target."]
-        _section(console, "Numbers that would flip it, each alone at an end of its range", terminal.wrapped(sentences))
+        title = "Numbers that would flip it, each alone at an end of its range"
+        _section(console, title, terminal.wrapped(flips["sentences"]))
     _section(console, "Cautions", terminal.wrapped(results.cautions))
     _section(console, "Numbers that decided, with source and status", terminal.source_lines(results))
 

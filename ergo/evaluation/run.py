@@ -85,8 +85,9 @@ def evaluate(study: Study, *, library: Library | None = None, operators: Operato
     results = _results(made, capability, posture, gap, second, gone, counted)
     if not with_flips:
         return results
-    found = [{**asdict(flip), "sentence": flip.sentence()} for flip in flips(study, evaluate, tables, tell)]
-    return replace(results, details={**results.details, "flips": found})
+    found = flips(study, evaluate, tables, tell)
+    said = [flip.sentence() for flip in found] or ["No recalled or derived number alone would flip a target."]
+    return replace(results, details={**results.details, "flips": {"sentences": said, "rows": [asdict(f) for f in found]}})
 
 
 def easiest_postures(made: Plan, capability: HandCapability) -> Posture:
