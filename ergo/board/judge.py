@@ -115,15 +115,19 @@ class Judge:
         known = self.known(study)
         if known is not None:
             return known
+        results = self.borrow(study, tell)
+        self._remember(question_key(study), results)
+        return results
+
+    def borrow(self, study: Study, tell: Callable[[float, str], None], **more: Any) -> Results:
+        """Ask the engine with other tables or people for long work in the background; nothing is remembered."""
         with self._changed:
             while self._queue or self._running is not None:
                 self._changed.wait(0.5)
                 tell(0.0, "the hand goes first")
         extra: dict[str, Any] = {"tell": tell} if self._tells else {}
         with ENGINE:
-            results = self._evaluate(study, **extra)
-        self._remember(question_key(study), results)
-        return results
+            return self._evaluate(study, **extra, **more)
 
     def _remember(self, key: str, results: Results) -> None:
         with self._changed:

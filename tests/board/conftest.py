@@ -36,7 +36,7 @@ class MadeEngine:
         self.asked = []
         self.takes_s = 0.0
 
-    def __call__(self, study, *, tell=lambda share, what: None):
+    def __call__(self, study, *, library=None, tell=lambda share, what: None):
         tell(0.0, "starting")
         time.sleep(self.takes_s)
         tell(0.5, "half way")
@@ -44,6 +44,8 @@ class MadeEngine:
         base = self.made.made(short=True)
         length = study.lever.length_mm if study.lever else 300.0
         value = served_share(length)
+        if library is not None and library.changes.get(("grip_on_handle", "breakaway_ball_share")) == 0.7:
+            value = 100.0
         served = dataclasses.replace(base.ratings["served"], value=value, reason=f"{value:.1f} % meet every target.",
                                      met=value >= 95.0)
         people = {"population": study.operators.population, "count": study.operators.count,

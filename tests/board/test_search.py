@@ -119,3 +119,15 @@ def test_a_placement_that_is_no_study_says_so_in_its_row(board, new_page):
     page.locator("#sweep").click()
     page.locator("#sweep-says", has_text="Done: 3 placements").wait_for()
     assert "is outside its range, got 0" in page.locator("#sweep-table tbody tr").first.inner_text()
+
+
+@pytest.mark.browser
+def test_what_would_flip_the_verdict_is_looked_for_and_told(board, new_page):
+    page = new_page()
+    steps.open_study(page, board.address)
+    page.get_by_role("navigation").get_by_role("link", name="Sources").click()
+    page.locator("#flips").click()
+    told = page.locator("#flips-says li")
+    told.first.wait_for(timeout=60_000)
+    # The made engine serves everybody at one end of one recalled row, and answers alike for all others.
+    assert told.all_inner_texts() == ["breakaway_ball_share (grip_on_handle, memory) at 0.7 would change: served met."]

@@ -13,7 +13,7 @@ from ergo.board.room import Room
 from ergo.board.searching import keys_to_vary
 from ergo.board.store import Work
 
-READ = {"/left-out": Id.LEFT_OUT_BODY, "/let-go": Id.LET_GO_BODY, "/sources": Id.SOURCES_BODY}
+READ = {"/left-out": Id.LEFT_OUT_BODY, "/let-go": Id.LET_GO_BODY}
 
 
 def register(app: Dash, room: Room) -> None:
@@ -72,6 +72,8 @@ def page_of(path: str, work: Work, room: Room) -> Any:
         return layouts.placements.page(work)
     if path == "/search":
         return layouts.search.page(keys_to_vary(work.draft.data), suggests=False)
+    if path == "/sources":
+        return layouts.sources.page()
     if path in READ:
         return html.Div(html.Div(html.P("The engine is at it.", className="waiting"), id=READ[path]), className="page")
     return layouts.bench.page(work.draft)

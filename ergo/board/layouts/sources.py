@@ -3,17 +3,47 @@
 from collections import Counter, defaultdict
 from typing import Any
 
-from dash import html
+from dash import dcc, html
 
+from ergo.board.ids import Id
+from ergo.board.jobs import Job
 from ergo.board.layouts.figures import table
+from ergo.board.layouts.search import progress
 from ergo.evaluation.results import Results
 from ergo.sources import STATUS_MEANING, STATUSES, bibliography
 
 COLUMNS = ("number", "value", "status", "source", "where in it")
 
 
+def page() -> html.Div:
+    """Return the page; its body follows the study, the search for what would flip the verdict is asked for."""
+    return html.Div(
+        [
+            html.Div(html.P("The engine is at it.", className="waiting"), id=Id.SOURCES_BODY),
+            html.H3("Which of these numbers would flip the verdict?"),
+            html.P("Each recalled or derived number alone is moved to the ends of its stated range, for few operators. "
+                   "This takes a while."),
+            html.Div([html.Button("Look for them", id=Id.FLIPS, n_clicks=0),
+                      html.Button("Stop", id=Id.FLIPS_STOP, n_clicks=0, disabled=True)], className="row"),
+            html.Div(id=Id.FLIPS_SAYS, role="status"),
+            dcc.Store(id=Id.FLIPS_JOB),
+            dcc.Interval(id=Id.FLIPS_TICK, interval=500, disabled=True),
+        ],
+        className="page",
+    )  # fmt: skip
+
+
+def flips_found(job: Job) -> list[Any]:
+    """Return what would flip the verdict, as far as it is known."""
+    if not job.done.is_set() or job.trouble:
+        return progress(job)
+    if not job.result:
+        return [html.P("None of them alone would change which targets are met.")]
+    return [html.Ul([html.Li(f.sentence()) for f in job.result], className="cautions")]
+
+
 def body(results: Results) -> list[Any]:
-    """Return the page for results."""
+    """Return the page's body for results."""
     counts = Counter(row["status"] for row in results.sources)
     used = [row["source"] for row in results.sources]
     return [
