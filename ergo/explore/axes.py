@@ -166,7 +166,7 @@ class Placements:
         if not self._points:
             from scipy.stats import qmc
 
-            draw = qmc.Sobol(len(self.axes), scramble=True, seed=self.seed)
+            draw = qmc.Sobol(len(self.axes), scramble=True, rng=np.random.default_rng(self.seed))
             self._points.append(draw.random_base2(max(math.ceil(math.log2(self.sobol)), 0))[: self.sobol])
         return self._points[0]
 

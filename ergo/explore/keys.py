@@ -1,4 +1,4 @@
-"""Keys of a study by dotted path, down to one number of a point: `lever.length_mm`, `lever.pivot_mm[2]`, `zones[0].size_mm[1]`."""
+"""Keys of a study by dotted path, down to one number of a point: `lever.length_mm`, `lever.pivot_mm[2]`."""
 
 import re
 from collections.abc import Mapping
@@ -78,9 +78,7 @@ def placed(study: Study, values: Mapping[str, Any]) -> Study:
         place: Any = data
         for step in parents:
             place = _inside(place, step, path)
-        if isinstance(last, int) and (not isinstance(place, list) or last >= len(place)):
-            raise StudyError([Problem(path, "has no such number")])
-        place[last] = value
+        _set(place, last, value, path)
     return build(data, study.folder, study.name).model_copy(update={"variant_name": study.variant_name})
 
 
@@ -91,3 +89,11 @@ def _inside(place: Any, step: str | int, path: str) -> Any:
     if isinstance(step, int) and isinstance(place, list) and step < len(place):
         return place[step]
     raise StudyError([Problem(path, "is no key of this study")])
+
+
+def _set(place: Any, last: str | int, value: Any, path: str) -> None:
+    numbered = isinstance(place, list) and isinstance(last, int) and last < len(place)
+    if not numbered and not (isinstance(place, dict) and isinstance(last, str)):
+        raise StudyError([Problem(path, "is no key of this study")])
+    part: Any = place
+    part[last] = value
