@@ -28,18 +28,28 @@ class Lock:
             If another process has it, or the folder cannot be written.
         """
         for _ in range(3):
-            try:
-                connection = sqlite3.connect(self._path, timeout=0.0, isolation_level=None)
-                before = self._path.stat().st_ino
-                connection.execute("BEGIN EXCLUSIVE")
-            except (sqlite3.Error, OSError) as error:
-                raise DataError(self._sentence(error)) from error
+            before = self._attempt()
             # Whoever held it may have taken the file away between opening and locking.
             if self._path.exists() and self._path.stat().st_ino == before:
-                self._connection = connection
                 return
-            connection.close()
+            self._close()
         raise DataError(self._sentence(sqlite3.OperationalError("the lock keeps moving")))
+
+    def _attempt(self) -> int:
+        """Open and lock the lock file; return which file was opened."""
+        try:
+            self._connection = sqlite3.connect(self._path, timeout=0.0, isolation_level=None)
+            opened = self._path.stat().st_ino
+            self._connection.execute("BEGIN EXCLUSIVE")
+        except (sqlite3.Error, OSError) as error:
+            self._close()
+            raise DataError(self._sentence(error)) from error
+        return opened
+
+    def _close(self) -> None:
+        if self._connection is not None:
+            self._connection.close()
+        self._connection = None
 
     def release(self) -> None:
         """Let go, and take the lock file away."""
@@ -47,8 +57,7 @@ class Lock:
             return
         with contextlib.suppress(OSError):
             self._path.unlink()
-        self._connection.close()
-        self._connection = None
+        self._close()
 
     def _sentence(self, error: Exception) -> str:
         if getattr(error, "sqlite_errorcode", 0) & 0xFF == sqlite3.SQLITE_BUSY:

@@ -19,7 +19,7 @@ from ergo.explore.store import Head, Store, open_store
 from ergo.explore.workers import Chunk, Crew, Judge, OtherCodeError, chunk_of, crew_of
 from ergo.study.model import Study
 
-CHUNK_S, LARGEST_CHUNK = 1.0, 256
+CHUNK_S, LARGEST_CHUNK = 0.25, 256
 WAITING_A_WORKER = 2
 DEATHS_BORNE = 3
 
