@@ -31,15 +31,19 @@
   /* The page sets controls itself; what they say back then is an echo, not a hand. */
   function put(type, path, value) {
     const key = type + " " + path;
-    (board.echoes[key] = board.echoes[key] || []).push({ value: value, until: performance.now() + 3000 });
+    (board.echoes[key] = board.echoes[key] || []).push({ value: value, until: performance.now() + 4000 });
     setProps(idOf(type, path), typeof value === "boolean" ? { checked: value } : { value: value });
   }
 
+  /* Echoes come late, in any order and more than once. What the hand is on at the moment is never one. */
   function isEcho(id, value) {
-    const list = (board.echoes[id.type + " " + id.path] || []).filter((echo) => echo.until > performance.now());
-    const at = list.findIndex((echo) => same(echo.value, value));
-    board.echoes[id.type + " " + id.path] = list.slice(at + 1);
-    return at >= 0;
+    const key = id.type + " " + id.path;
+    const control = partId(id.type, id.path);
+    const list = (board.echoes[key] || []).filter((echo) => echo.until > performance.now());
+    board.echoes[key] = list;
+    if (control && control.contains(document.activeElement)) return false;
+    if (id.type === "slider" && board.dragging) return false;
+    return list.some((echo) => same(echo.value, value));
   }
 
   /* ---- sending ---- */
@@ -168,13 +172,29 @@
     if (event.target.closest && event.target.closest("[role=slider], .mantine-Slider-root")) {
       board.dragging = true;
       board.draggedFrom = board.number;
+      board.slid = event.target.closest(".mantine-Slider-root");
     }
   }, true);
   document.addEventListener("pointerup", () => {
     if (!board.dragging) return;
-    board.dragging = false;
-    // The slider's last word comes a frame or two after the finger has left it.
-    if (board.number !== board.draggedFrom || board.held) setTimeout(rest, 40);
+    const slid = board.slid;
+    board.slid = null;
+    // The slider's last word is on the page a frame or two after the finger has left it.
+    requestAnimationFrame(() => requestAnimationFrame(() => {
+      board.dragging = false;
+      const thumb = slid && slid.querySelector("[role=slider]");
+      const owner = slid && (slid.id.startsWith("{") ? slid : slid.querySelector("[id^='{']") || slid.closest("[id^='{']"));
+      if (thumb && owner) {
+        const path = JSON.parse(owner.id).path, value = Number(thumb.getAttribute("aria-valuenow"));
+        if (!same(board.known[path], value)) {
+          board.held = null;
+          put("value", path, value);
+          board.set(path, value, "rest");
+          return;
+        }
+      }
+      if (board.number !== board.draggedFrom || board.held) rest();
+    }));
   }, true);
 
   /* ---- what arrives ---- */
