@@ -94,12 +94,12 @@ def sweep(study: Study, placements: Placements, path: Path, *, resume: bool = Fa
     """
     head = head_of(study, placements)
     with open_store(path, head, resume=resume) as store:
-        todo = np.flatnonzero(~store.done)
-        if todo.size == 0:
+        left = np.flatnonzero(~store.done)
+        if left.size == 0:
             return 0
         hands: Crew = crew if crew is not None else crew_of(workers)
         try:
-            return _run(store, _Work(study, judge, placements, head), todo, hands, tell)
+            return _run(store, _Work(study, judge, placements, head), left, hands, tell)
         finally:
             hands.close()
 
@@ -116,17 +116,17 @@ class _Work:
         return chunk_of(self.study, self.judge, numbers, self.placements.values, code=parts["code"], data=parts["data"])
 
 
-def _run(store: Store, work: _Work, todo: np.ndarray, hands: Crew, tell: Callable[[Progress], None] | None) -> int:
+def _run(store: Store, work: _Work, left: np.ndarray, hands: Crew, tell: Callable[[Progress], None] | None) -> int:
     pace, at, deaths = _Pace(), 0, 0
     again: deque[Chunk] = deque()
     out: dict[Future[Any], Chunk] = {}
-    while at < todo.size or again or out:
-        while len(out) < WAITING_A_WORKER * hands.size and (again or at < todo.size):
+    while at < left.size or again or out:
+        while len(out) < WAITING_A_WORKER * hands.size and (again or at < left.size):
             if again:
                 chunk = again.popleft()
             else:
-                size = pace.chunk(hands.size, todo.size - at)
-                chunk = work.chunk(todo[at : at + size])
+                size = pace.chunk(hands.size, left.size - at)
+                chunk = work.chunk(left[at : at + size])
                 at += size
             out[hands.submit(chunk)] = chunk
         finished, _ = wait(out, timeout=1.0, return_when=FIRST_COMPLETED)

@@ -87,7 +87,7 @@ def main(folder, kills, seed):
         counts["sweeps"] += 1
         counts["lost"] += len(expected.keys() - rows(path).keys())
         counts["changed"] += rows(path) != expected
-    print(json.dumps(counts))  # noqa: T201
+    print(json.dumps(counts))
 
 
 if __name__ == "__main__":

@@ -154,7 +154,7 @@ def test_a_damaged_store_is_told_and_left_as_it_is(tmp_path, damage):
     path = swept(tmp_path / "s.db")
     path.write_bytes(damage(path.read_bytes()))
     before = path.read_bytes()
-    with pytest.raises(DataError, match="the store is damaged .* left as it is"):
+    with pytest.raises(DataError, match=r"the store is damaged .* left as it is"):
         sweep(STUDY, ASKED, path, resume=True, workers=0, judge=judge)
     assert path.read_bytes() == before
     assert sorted(p.name for p in tmp_path.iterdir() if p.suffix == ".lock") == []
@@ -230,7 +230,7 @@ def test_a_full_disk_is_told_and_nothing_is_lost(small_disk):
     def judge_and_fill(study):
         judged.append(study)
         if len(judged) == 300:
-            with filling.open("wb", buffering=0) as out, pytest.raises(OSError, match="No space left"):
+            with filling.open("wb", buffering=0) as out, pytest.raises(OSError, match="No space left"):  # noqa: PT012
                 while True:
                     out.write(bytes(4096))
         return judge(study)
