@@ -73,10 +73,24 @@ def _grip(study: Study) -> Iterator[Problem]:
 def _zones(study: Study) -> Iterator[Problem]:
     names: set[str] = set()
     for n, (made, zone) in enumerate(zip(study.zones, zones_of(study), strict=True)):
-        yield from zone.problems(f"zones[{n}]")
+        found = zone.problems(f"zones[{n}]")
+        yield from found
+        if not found and (zone.distance_m(_body_at_rest(study)) < 0.0).any():
+            yield Problem(f"zones[{n}]", "overlaps the operator at rest", made.name,
+                          "a zone clear of where people stand or sit")  # fmt: skip
         if made.name in names:
             yield Problem(f"zones[{n}].name", "is used twice", made.name, "a name of its own")
         names.add(made.name)
+
+
+def _body_at_rest(study: Study) -> np.ndarray:
+    """Return points (M, 3) [m] up the middle of the body, where people stand farthest back, or sit."""
+    asked = study.operators
+    seated = asked.posture == "seated"
+    y = asked.seat_y_mm if seated else -max(asked.stand_off_mm[1], 0.0) - BODY_DEPTH_MM
+    heights = np.linspace(asked.seat_height_mm if seated else 200.0, 1300.0, 12)
+    x = 0.5 * (asked.stand_x_mm[0] + asked.stand_x_mm[1])
+    return np.array([(x, y, z) for z in heights]) * 1e-3
 
 
 def _touch_points(study: Study) -> Iterator[Problem]:

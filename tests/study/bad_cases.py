@@ -101,6 +101,8 @@ CASES = {
     "nowhere_to_stand": (GOOD + "[operators]\nstand_off_mm = [-400, -300]\n", ["operators.stand_off_mm: lets nobody stand"]),
     "zone_without_size": (GOOD + '[[zones]]\nname = "a"\nshape = "box"\ncentre_mm = [0, 0, 0]\nsize_mm = [10, 0, 10]\n',
                           ["zones[0].size_mm: must be above zero three times"]),
+    "zone_on_the_operator": (GOOD + '[[zones]]\nname = "bin"\nshape = "ball"\ncentre_mm = [0, -550, 900]\nradius_mm = 120\n',
+                             ["zones[0]: overlaps the operator at rest, got bin"]),
     "zone_of_no_shape": (GOOD + '[[zones]]\nname = "a"\nshape = "cone"\n', ["zones[0].shape", "box, cylinder, ball"]),
     "zones_of_one_name": (GOOD + 2 * '[[zones]]\nname = "a"\nshape = "ball"\ncentre_mm = [0, 900, 0]\nradius_mm = 10\n',
                           ["zones[1].name: is used twice"]),
