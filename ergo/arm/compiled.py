@@ -10,7 +10,10 @@ import os
 import tempfile
 from pathlib import Path
 
-_KERNEL_FILES = ("kernels.py", "posture_search.py", "stance_search.py")
+_KERNEL_FILES = (
+    "kernels.py", "posture_limits.py", "linear_steps.py", "posture_search.py", "stance_search.py", "crowd_search.py",
+    "outlines.py",
+)  # fmt: skip
 
 
 def cache_folder() -> Path:

@@ -5,10 +5,10 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from ergo.arm.stance_search import describe
+from ergo.arm.outlines import describe
 
 Array = NDArray[np.float64]
-_ROW = 27
+_ROW = 24
 
 
 @dataclass(frozen=True)

@@ -1,318 +1,221 @@
 """The bare posture search: the strongest and the easiest posture at a stroke position within a stance.
 
 A posture is three numbers: where the centre of mass stands over the feet (0 back, 1 front of the functional base),
-the bend at the hips (rad) and the arm's swivel (rad). Stance and girdle bound the force without looking at the
-swivel; so for each of the first two the swivel is only searched until the arm gives what they allow.
+the bend at the hips (rad) and the arm's swivel (rad). A coarse look over all three finds where to start, linear
+steps do the rest.
 """
 
 import math
 
 import numpy as np
 
-from ergo.arm.kernels import (
-    BALL,
-    BEND_MAX,
-    BEND_MIN,
-    BODY_FRONT,
-    CHEST_HALF,
-    COM_SLACK,
-    COS_ELBOW_MIN,
-    FOREARM,
-    FOREARM_MASS,
-    GIRDLE_PULL,
-    GIRDLE_PUSH,
-    HALF_BREADTH,
-    HAND_DEPTH,
-    HAND_MASS,
-    LIMIT_GIRDLE,
-    LIMIT_REACH,
-    LIMIT_TOO_CLOSE,
-    LIMIT_TRUNK_IN_WAY,
-    MASS,
-    NO_LIMIT,
-    PROTRACTION,
-    REACH_EASE,
-    SEATED,
-    SWIVEL_HIGH,
-    SWIVEL_LOW,
-    UPPER,
-    UPPER_MASS,
-    bare,
-    front_at,
-    judge_arm,
-    place_body,
-    stance_limit,
-)  # fmt: skip
+from ergo.arm import kernels as k
+from ergo.arm.kernels import bare
+from ergo.arm.linear_steps import improve
+from ergo.arm.posture_limits import (
+    CLOSE,
+    EASE,
+    LOADS,
+    LOW,
+    REACH,
+    ROOMS_END,
+    arm_is_formed,
+    arm_limits,
+    body_limits,
+    judge_posture,
+    verdict,
+)
 
-COM_STEPS, BEND_STEPS, SWIVEL_STEPS = 4, 5, 15
-TOUCHING_GAP = 0.03  # m: a body this near the bench edge leans on it when braced
-FINE = 0.011  # a search to smaller steps than this also looks at every swivel
-NEVER = 1e9  # discomfort of a posture that does not carry what is needed
-# Compass directions in units of (com share, bend): the best posture often sits on a ridge where two limits meet.
-COMPASS = np.array([[1, 0], [-1, 0], [0, 1], [0, -1], [1, 1], [-1, -1], [1, -1], [-1, 1]], dtype=np.float64)
+BENDS, SHARES, SWIVELS = 4, 3, 6  # of a full look
+HARD_BENDS, HARD_SHARES = 5, 4
+AS_GOOD = 0.97  # a position that came out this much worse than its neighbour is tried again
+FEW_BENDS, FEW_SHARES, FEW_SWIVELS = 3, 2, 5
+ROOMY = 0.05  # a bound nearer than this [m, or as a cosine or sine] speaks against a posture in the coarse look
+SECOND_WORTH = 1.7  # a second start is followed if its load is up to this much larger than the first's
+STRIDE = 5  # positions from one full look to the next
+ALL_STEPS, FEW_STEPS = np.array([24]), np.array([10])  # arrays, so that numba compiles one search for all
+FINE, COARSE, EASY = 0.002, 0.01, 0.02  # shares of what is sought that the steps still have to promise
+MISSED = 1e6  # badness of a posture that is not possible, and more the more room is missing
+NEVER = 1e9
 
 
 @bare
-def hand_in_trunk(op, target, stand_x, body, shoulder_z):
-    """Whether the grip lies inside or behind the front of the trunk."""
-    if abs(target[0] - stand_x) > op[CHEST_HALF] or target[2] < body[1] or target[2] > shoulder_z:
-        return False
-    line = body[0] + (target[2] - body[1]) * body[2] / max(body[3], 0.2)
-    return target[1] < line + op[BODY_FRONT] + op[HAND_DEPTH]
+def badness(row, weight, need):
+    """What the coarse look makes small: load and lacking room; with a `need`, the discomfort where it is carried."""
+    room, top = 1.0, 0.0
+    for n in range(LOADS, ROOMS_END):
+        room = min(room, row[n])
+    for n in range(LOADS):
+        top = max(top, row[n])
+    if need < 0.0:
+        room = min(room, 1.0 - row[LOW] * top)
+        if room < 0.0:
+            return MISSED * (1.0 - room)
+        return top / weight * (1.0 + 0.3 * max(1.0 - room / ROOMY, 0.0))
+    lacking = max(need * top - 1.0, (row[LOW] - need) / (need + 1.0), -100.0 * room, 0.0)
+    return row[EASE] + 50.0 * lacking
 
 
 @bare
-def prepare(op, scene, limits, stand_x, stand_y, target, com_share, bend):
-    """All that a posture decides before the arm swivels.
+def look(person, stand_x, stand_y, target, weight, need, bends, shares, swivels, starts, row):
+    """Coarse look at all postures: the best of each bend into `starts` (bends, 4): share, bend, swivel, badness."""
+    op, shape, scene, limits = person
+    ball = scene[k.BALL] > 0.0
+    shares = 1 if scene[k.SEATED] > 0.0 else (2 * shares if scene[k.COM_SLACK] > 0.0 else shares)
+    width = (scene[k.SWIVEL_HIGH] - scene[k.SWIVEL_LOW]) / swivels
+    for i in range(bends):
+        start = starts[i]
+        start[3] = NEVER
+        bend = scene[k.BEND_MIN] + (scene[k.BEND_MAX] - scene[k.BEND_MIN]) * (i + 0.15) / (bends - 0.7)
+        for j in range(shares):
+            share = (j + 0.5) / shares
+            place, body, ease = body_limits(op, scene, limits, stand_x, stand_y, target, share, bend, row)
+            formed = arm_is_formed(row)
+            for s in range(swivels if formed else 1):
+                swivel = scene[k.SWIVEL_LOW] + (s + 0.5) * width
+                if formed:
+                    row[EASE] = ease + arm_limits(
+                        op, shape, limits, ball, place, body, target, math.cos(swivel), math.sin(swivel), row
+                    )
+                    found = badness(row, weight, need)
+                else:
+                    found = MISSED * (1.0 + max(-row[REACH], -row[CLOSE]))
+                if found < start[3]:
+                    start[0], start[1], start[2], start[3] = share, bend, swivel, found
 
-    Returns (value, limit, place, body, ceiling, ceiling limit, smallest force, discomfort): a value of 0 or more
-    means that the hand gets there; below, how far it is from getting there.
+
+@bare
+def ends_of(scene, window, count, lowest, highest):
+    """Ends of the unknowns: the stance inside its window, then every position's posture."""
+    lowest[0], highest[0], lowest[1], highest[1] = window
+    for p in range(count):
+        lowest[2 + 3 * p], highest[2 + 3 * p] = 0.0, 1.0
+        lowest[3 + 3 * p], highest[3 + 3 * p] = scene[k.BEND_MIN], scene[k.BEND_MAX]
+        lowest[4 + 3 * p], highest[4 + 3 * p] = scene[k.SWIVEL_LOW], scene[k.SWIVEL_HIGH]
+
+
+@bare
+def settle(person, path, need, ends, at, size, steps, enough, seen, work):
+    """Improve one posture from `at` (5,) with the stance fixed; keep it in `seen` (6,) if better.
+
+    `seen` is share, bend, swivel, force (below 0: how far from getting there), limit, discomfort.
     """
-    fault, hip_y, hip_z, sin_t, cos_t, shoulder_y, shoulder_z, com, sin_l = place_body(
-        op, scene, stand_y, com_share, bend
-    )
-    body = (hip_y, hip_z, sin_t, cos_t)
-    place = (stand_x + op[HALF_BREADTH], shoulder_y, shoulder_z, stand_x)
-    if fault >= 0:
-        return -4.0, fault, place, body, 0.0, fault, 0.0, 9.0
-    rx, ry, rz = target[0] - place[0], target[1] - shoulder_y, target[2] - shoulder_z
-    far = math.sqrt(rx * rx + ry * ry + rz * rz)
-    longest = op[UPPER] + op[FOREARM]
-    # The shoulder comes forward only as far as the reach asks for it.
-    toward = max((ry * cos_t - rz * sin_t) / far, 0.2)
-    forward = min(max((far - scene[REACH_EASE] * longest) / toward, 0.0), op[PROTRACTION])
-    place = (place[0], shoulder_y + forward * cos_t, shoulder_z - forward * sin_t, stand_x)
-    rx, ry, rz = target[0] - place[0], target[1] - place[1], target[2] - place[2]
-    far = math.sqrt(rx * rx + ry * ry + rz * rz)
-    if far > 0.999 * longest:
-        return -1.0 - (far - 0.999 * longest), LIMIT_REACH, place, body, 0.0, LIMIT_REACH, 0.0, 9.0
-    nearest = op[UPPER] ** 2 + op[FOREARM] ** 2 - 2.0 * op[UPPER] * op[FOREARM] * limits[COS_ELBOW_MIN]
-    if far * far < nearest:
-        short = math.sqrt(nearest) - far
-        return -1.0 - short, LIMIT_TOO_CLOSE, place, body, 0.0, LIMIT_TOO_CLOSE, 0.0, 9.0
-    if hand_in_trunk(op, target, stand_x, body, shoulder_z):
-        return -0.6, LIMIT_TRUNK_IN_WAY, place, body, 0.0, LIMIT_TRUNK_IN_WAY, 0.0, 9.0
-    arm_share = (op[UPPER_MASS] + op[FOREARM_MASS] + op[HAND_MASS]) / op[MASS]
-    touching = front_at(op, scene, stand_y, hip_y, hip_z, sin_t, cos_t, shoulder_z) > -TOUCHING_GAP
-    ceiling, code, low = stance_limit(
-        op, scene, stand_y, com + 0.5 * arm_share * ry, 0.5 * arm_share * rx, touching,
-        target[0] - stand_x, target[1], target[2], target[3], target[4], target[5],
-    )  # fmt: skip
-    line = (rx * target[3] + ry * target[4] + rz * target[5]) / far
-    girdle = op[GIRDLE_PUSH] / line if line > 1e-6 else (op[GIRDLE_PULL] / -line if line < -1e-6 else NO_LIMIT)
-    if girdle < ceiling:
-        ceiling, code = girdle, LIMIT_GIRDLE
-    discomfort = 2.0 * (1.0 - cos_t) + 4.0 * sin_l * sin_l + 4.0 * forward * forward
-    return 0.0, code, place, body, ceiling, code, low, discomfort
-
-
-@bare
-def best_swivel(op, shape, scene, limits, place, body, target, start, goal, wide):
-    """Largest force of the arm over its swivel: (force, swivel, limit); left as soon as it gives `goal`.
-
-    With `wide` the whole window is looked at first, else only the neighbourhood of `start`.
-    """
-    ball = scene[BALL] > 0.0
-    best, code, _ = judge_arm(
-        op, shape, limits, ball, place, body, target, math.cos(start), math.sin(start), NO_LIMIT, -1
-    )
-    at = start
-    if best >= goal:
-        return best, at, code
-    step = (scene[SWIVEL_HIGH] - scene[SWIVEL_LOW]) / (SWIVEL_STEPS - 1)
-    if wide or best < 0.0:
-        turn_c, turn_s = math.cos(step), math.sin(step)
-        c, s = math.cos(scene[SWIVEL_LOW]), math.sin(scene[SWIVEL_LOW])
-        for k in range(SWIVEL_STEPS):
-            force, limit, _ = judge_arm(op, shape, limits, ball, place, body, target, c, s, NO_LIMIT, -1)
-            if force > best:
-                best, at, code = force, scene[SWIVEL_LOW] + k * step, limit
-                if best >= goal:
-                    return best, at, code
-            c, s = c * turn_c - s * turn_s, s * turn_c + c * turn_s
-    while step > 0.006:
-        step *= 0.5
-        middle = at
-        for side in (-1.0, 1.0):
-            swivel = min(max(middle + side * step, scene[SWIVEL_LOW]), scene[SWIVEL_HIGH])
-            force, limit, _ = judge_arm(
-                op, shape, limits, ball, place, body, target, math.cos(swivel), math.sin(swivel), NO_LIMIT, -1
-            )
-            if force > best:
-                best, at, code = force, swivel, limit
-                if best >= goal:
-                    return best, at, code
-                break
-    return best, at, code
-
-
-@bare
-def try_posture(op, shape, scene, limits, stand_x, stand_y, target, seen, com_share, bend, wide):
-    """Judge a centre-of-mass place and a bend with their best swivel; keep them in `seen` (5,) if better.
-
-    `seen` is com share, bend, swivel, force (below 0: how far from getting there), limit. Returns whether it was.
-    """
-    com_share = min(max(com_share, 0.0), 1.0)
-    bend = min(max(bend, scene[BEND_MIN]), scene[BEND_MAX])
-    value, code, place, body, ceiling, first, low, _ = prepare(
-        op, scene, limits, stand_x, stand_y, target, com_share, bend
-    )
-    swivel = seen[2]
-    if value >= 0.0:
-        if ceiling <= seen[3]:
-            return False
-        value, swivel, arm_code = best_swivel(op, shape, scene, limits, place, body, target, swivel, ceiling, wide)
-        code = arm_code
-        if value >= ceiling:
-            value, code = ceiling, first
-        if 0.0 <= value < low:
-            value = 0.0
-    if value > seen[3] + 1e-4 * abs(seen[3]):
-        seen[0], seen[1], seen[2], seen[3], seen[4] = com_share, bend, swivel, value, code
-        return True
-    return False
-
-
-@bare
-def along_bend(op, shape, scene, limits, stand_x, stand_y, target, line, bend, step, smallest, enough):
-    """Best place of the centre of mass for one bend, from the place in `line` (5,), by steps that halve."""
-    share = line[0]
-    line[3] = -1e6
-    try_posture(op, shape, scene, limits, stand_x, stand_y, target, line, share, bend, smallest < FINE)
-    if scene[SEATED] > 0.0:
-        return
-    while step > smallest and line[3] < enough:
-        middle, moved = line[0], False
-        for side in (-1.0, 1.0):
-            share = min(max(middle + side * step, 0.0), 1.0)
-            if share != middle and try_posture(
-                op, shape, scene, limits, stand_x, stand_y, target, line, share, bend, smallest < FINE
-            ):  # fmt: skip
-                moved = True
-        if not moved:
-            step *= 0.5
-
-
-@bare
-def look_from(op, shape, scene, limits, stand_x, stand_y, target, seen, step, smallest, enough):
-    """Strongest posture near the one in `seen` (5,): bends by halving steps, the best place for each bend.
-
-    Where two limits meet, the best place moves along with the bend; searching it for each bend follows that ridge.
-    """
-    line = seen.copy()
-    along_bend(op, shape, scene, limits, stand_x, stand_y, target, line, seen[1], step, smallest, enough)
-    seen[:] = line
-    span = scene[BEND_MAX] - scene[BEND_MIN]
-    while step > smallest and seen[3] < enough:
-        middle, moved = seen[1], False
-        for side in (-1.0, 1.0):
-            bend = min(max(middle + side * step * span, scene[BEND_MIN]), scene[BEND_MAX])
-            if bend == middle:
-                continue
-            line[:] = seen
-            along_bend(op, shape, scene, limits, stand_x, stand_y, target, line, bend, step, smallest, enough)
-            if line[3] > seen[3] + 1e-4 * abs(seen[3]):
-                seen[:], moved = line, True
-        if not moved:
-            step *= 0.5
-
-
-@bare
-def look_everywhere(op, shape, scene, limits, stand_x, stand_y, target, seen, smallest, enough):
-    """Strongest posture of all: a coarse look at each of a few bends, then `look_from` the best two of them."""
-    # Leaning widens the way of the centre of mass, so more places are looked at.
-    wide = COM_STEPS if scene[COM_SLACK] <= 0.0 else 2 * COM_STEPS
-    steps = 1 if scene[SEATED] > 0.0 else wide
-    lines = np.zeros((BEND_STEPS, 5))
-    first, second = 0, -1
-    for j in range(BEND_STEPS):
-        line = lines[j]
-        line[2], line[3] = seen[2], -1e6
-        bend = scene[BEND_MIN] + j * (scene[BEND_MAX] - scene[BEND_MIN]) / (BEND_STEPS - 1)
-        for i in range(steps):
-            try_posture(op, shape, scene, limits, stand_x, stand_y, target, line, i / (wide - 1), bend, True)
-        if line[3] >= enough:
-            seen[:] = line
-            return
-        if line[3] > lines[first, 3]:
-            first = j
-    for j in range(BEND_STEPS):
-        if abs(j - first) > 1 and (second < 0 or lines[j, 3] > lines[second, 3]):
-            second = j
-    seen[:] = lines[first]
-    if smallest > 0.2:
-        return
-    look_from(op, shape, scene, limits, stand_x, stand_y, target, seen, 0.16, smallest, enough)
-    if seen[3] < enough and second >= 0 and lines[second, 3] > 0.6 * seen[3]:
-        other = lines[second]
-        look_from(op, shape, scene, limits, stand_x, stand_y, target, other, 0.16, smallest, enough)
-        if other[3] > seen[3]:
-            seen[:] = other
-
-
-@bare
-def try_ease(op, shape, scene, limits, stand_x, stand_y, target, seen, com_share, bend, need, near):
-    """Judge a place and a bend by the least discomfort of a swivel that carries `need`; keep it if easier.
-
-    `seen` is com share, bend, swivel, force, discomfort; `near` looks only at swivels beside the one in `seen`.
-    """
-    com_share = min(max(com_share, 0.0), 1.0)
-    bend = min(max(bend, scene[BEND_MIN]), scene[BEND_MAX])
-    value, _, place, body, ceiling, _, low, ease = prepare(op, scene, limits, stand_x, stand_y, target, com_share, bend)
-    if value < 0.0 or ceiling < need or low > need or ease >= seen[4]:
-        return False
-    ball, better = scene[BALL] > 0.0, False
-    step = (scene[SWIVEL_HIGH] - scene[SWIVEL_LOW]) / (SWIVEL_STEPS - 1)
-    first, count = (seen[2] - 0.5 * step, 3) if near else (scene[SWIVEL_LOW], SWIVEL_STEPS)
-    step = 0.5 * step if near else step
-    for k in range(count):
-        swivel = min(max(first + k * step, scene[SWIVEL_LOW]), scene[SWIVEL_HIGH])
-        force, _, bent = judge_arm(
-            op, shape, limits, ball, place, body, target, math.cos(swivel), math.sin(swivel), NO_LIMIT, -1
-        )
-        if force >= need and ease + bent < seen[4] - 1e-3:
-            seen[0], seen[1], seen[2], seen[3], seen[4] = com_share, bend, swivel, min(force, ceiling), ease + bent
-            better = True
+    one = np.ones(1)
+    improve(person, path, one, need, ends, at, size, steps, enough, work)
+    force, code = verdict(work[0][0])
+    ease = work[0][0, EASE]
+    if need < 0.0:
+        better = force > seen[3]
+    else:
+        better = force >= need and work[0][0, LOW] <= need and ease < seen[5]
+    if better:
+        seen[0], seen[1], seen[2], seen[3], seen[4], seen[5] = at[2], at[3], at[4], force, code, ease
     return better
 
 
 @bare
-def look_for_ease(op, shape, scene, limits, stand_x, stand_y, target, seen, need, everywhere):
-    """Easiest posture that carries `need` into `seen` (5,): a grid where `everywhere`, then a short compass."""
-    seen[4] = NEVER
-    span = scene[BEND_MAX] - scene[BEND_MIN]
-    seated = scene[SEATED] > 0.0
-    if everywhere:
-        for i in range(1 if seated else COM_STEPS):
-            for j in range(BEND_STEPS):
-                bend = scene[BEND_MIN] + j * span / (BEND_STEPS - 1)
-                try_ease(
-                    op, shape, scene, limits, stand_x, stand_y, target, seen, i / (COM_STEPS - 1), bend, need, False
-                )
-    else:
-        try_ease(op, shape, scene, limits, stand_x, stand_y, target, seen, seen[0], seen[1], need, True)
-    step = 0.16 if everywhere else 0.04
-    while step > 0.02 and seen[4] < NEVER:
-        moved = False
-        for n in range(4):
-            if seated and COMPASS[n, 0] != 0.0:
-                continue
-            share, bend = seen[0] + step * COMPASS[n, 0], seen[1] + step * span * COMPASS[n, 1]
-            if try_ease(op, shape, scene, limits, stand_x, stand_y, target, seen, share, bend, need, True):
-                moved = True
-        if not moved:
-            step *= 0.5
+def look_everywhere(person, stand_x, stand_y, path, weight, need, ends, seen, work):
+    """Best posture at one position (`path` (1, 9)) into `seen`, from a coarse look and its two best bends."""
+    starts, at = np.zeros((BENDS, 4)), np.zeros(5)
+    at[0], at[1] = stand_x, stand_y
+    look(person, stand_x, stand_y, path[0], weight, need, BENDS, SHARES, SWIVELS, starts, work[8])
+    order = np.argsort(starts[:, 3])
+    for n in range(2):
+        start = starts[order[n]]
+        if n > 0 and start[3] > SECOND_WORTH * starts[order[0], 3]:
+            break
+        at[2:] = start[0:3]
+        settle(person, path, need, ends, at, 0.6, ALL_STEPS[0], FINE, seen, work)
 
 
 @bare
-def judge_posture(op, shape, scene, limits, stand_x, stand_y, target, com_share, bend, swivel):
-    """One posture as it is: (force or shortfall, limit)."""
-    value, code, place, body, ceiling, first, low, _ = prepare(
-        op, scene, limits, stand_x, stand_y, target, com_share, bend
-    )
-    if value < 0.0:
-        return value, code
-    force, code, _ = judge_arm(
-        op, shape, limits, scene[BALL] > 0.0, place, body, target, math.cos(swivel), math.sin(swivel), ceiling, first
-    )
-    return (force if force >= low else min(force, 0.0)), code
+def look_hard(person, stand_x, stand_y, path, weight, need, ends, seen, work):
+    """As `look_everywhere`, from a closer look and every bend's best; for the positions that decide."""
+    starts, at = np.zeros((HARD_BENDS, 4)), np.zeros(5)
+    at[0], at[1] = stand_x, stand_y
+    middle = 0.5 * (person[2][k.SWIVEL_LOW] + person[2][k.SWIVEL_HIGH])
+    for side in range(2):
+        scene = person[2].copy()
+        scene[k.SWIVEL_LOW if side == 0 else k.SWIVEL_HIGH] = middle
+        half = (person[0], person[1], scene, person[3])
+        look(half, stand_x, stand_y, path[0], weight, need, HARD_BENDS, HARD_SHARES, SWIVELS, starts, work[8])
+        for n in range(HARD_BENDS):
+            at[2:] = starts[n, 0:3]
+            settle(person, path, need, ends, at, 0.4, ALL_STEPS[0], FINE, seen, work)
+
+
+@bare
+def follow(person, at, targets, weights, needs, ends, scout, alone, found, work):
+    """Best posture at every position of a stance into `found` (P, 6).
+
+    `at` begins with the stance. `needs` (P,): below 0 for the strongest posture, else the force that the easiest one
+    has to carry, `NEVER` to leave a position as it is. Every few positions begin with a full look where `alone`, else
+    with the posture of `scout` (P, 4: share, bend, swivel, force); the positions between go on from these.
+    """
+    count = targets.shape[0]
+    trial = np.zeros(5)
+    trial[0], trial[1] = at[0], at[1]
+    for p in range(count):
+        if needs[p] >= NEVER:
+            continue
+        found[p, 3], found[p, 5] = -1e9, NEVER
+        if p % STRIDE == 0 or p == count - 1:
+            path = targets[p : p + 1]
+            if not alone:
+                trial[2:] = scout[p, 0:3]
+                settle(person, path, needs[p], ends, trial, 0.4, ALL_STEPS[0], COARSE if needs[p] < 0.0 else EASY, found[p], work)
+            if alone or (lacks(found[p], needs[p]) and scout[p, 3] >= 0.0):
+                look_everywhere(person, at[0], at[1], path, weights[p], needs[p], ends, found[p], work)
+    for p in range(count):
+        if p % STRIDE == 0 or p == count - 1 or needs[p] >= NEVER:
+            continue
+        before, after = p - p % STRIDE, min(p + STRIDE - p % STRIDE, count - 1)
+        go_between(person, at, targets, needs, before, p, after, ends, scout, trial, found, work)
+        if lacks(found[p], needs[p]) and (alone or scout[p, 3] >= 0.0):
+            look_everywhere(person, at[0], at[1], targets[p : p + 1], weights[p], needs[p], ends, found[p], work)
+    # Back over the stroke: a position that fell behind the next one is tried from the next one's posture.
+    for p in range(count - 2, -1, -1):
+        if needs[p] < NEVER and not keeps_up(found, scout, p, p + 1, needs[p]):
+            trial[2:] = found[p + 1, 0:3]
+            settle(person, targets[p : p + 1], needs[p], ends, trial, 0.3, FEW_STEPS[0], COARSE, found[p], work)
+
+
+@bare
+def go_between(person, at, targets, needs, before, p, after, ends, scout, trial, found, work):
+    """Best posture at position p from the postures at `before` and `after`, and from its neighbour's if that fails."""
+    share, path, need = (p - before) / (after - before), targets[p : p + 1], needs[p]
+    for start in range(2):
+        if start == 0:
+            trial[2:] = (1.0 - share) * found[before, 0:3] + share * found[after, 0:3]
+            if need >= 0.0 and takes(person, path[0], need, trial, found[p], work):
+                return
+        else:
+            trial[2:] = found[p - 1, 0:3]
+        settle(person, path, need, ends, trial, 0.2, FEW_STEPS[0], COARSE if need < 0.0 else EASY, found[p], work)
+        if keeps_up(found, scout, p, p - 1, need):
+            return
+
+
+@bare
+def takes(person, target, need, at, seen, work):
+    """Take the posture in `at` as it is if it carries the need; returns whether it did."""
+    op, shape, scene, limits = person
+    force, code = judge_posture(op, shape, scene, limits, at[0], at[1], target, at[2], at[3], at[4], work[8])
+    if force < need or work[8][LOW] > need:
+        return False
+    seen[0], seen[1], seen[2], seen[3], seen[4], seen[5] = at[2], at[3], at[4], force, code, work[8][EASE]
+    return True
+
+
+@bare
+def lacks(seen, need):
+    """Whether no posture was found: none that gets there, or none that carries the need."""
+    return seen[3] < 0.0 if need < 0.0 else seen[5] >= NEVER
+
+
+@bare
+def keeps_up(found, scout, p, other, need):
+    """Whether position p came out no worse than its neighbour `other`, beside how the scout's compare."""
+    if need >= 0.0:
+        return found[p, 5] <= 1.1 * found[other, 5] + 0.05
+    return found[p, 3] > 0.0 and found[p, 3] * scout[other, 3] >= AS_GOOD * found[other, 3] * scout[p, 3]

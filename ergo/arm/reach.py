@@ -49,7 +49,8 @@ def _shoulders(op: Array, scene: Array, stand_y: float) -> Array:
     found = []
     for bend in np.linspace(max(scene[k.BEND_MIN], 0.0), scene[k.BEND_MAX], STEPS):
         for share in np.linspace(0.0, 1.0, STEPS):
-            fault, _, _, sin_t, cos_t, y, z, _, _ = k.place_body(op, scene, stand_y, share, bend)
-            if fault < 0:
+            hip_y, hip_z, sin_t, cos_t, y, z, _, sin_l = k.place_body(op, scene, stand_y, share, bend)
+            free = k.front_at(op, scene, stand_y, hip_y, hip_z, sin_t, cos_t, z) <= 0.0
+            if free and abs(sin_l) <= scene[k.LEAN_MAX]:
                 found.append((y + op[k.PROTRACTION] * cos_t, z - op[k.PROTRACTION] * sin_t))
     return np.array(found or [(stand_y, op[k.ANKLE_Z] + op[k.LEG] + op[k.TRUNK])])

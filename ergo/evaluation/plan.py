@@ -7,16 +7,18 @@ import numpy as np
 from numpy.typing import NDArray
 
 from ergo.arm.body import Support
+from ergo.arm.scouts import SCOUTS
 from ergo.datasets import Library
 from ergo.evaluation.machine import MM, Machine, machine_of
 from ergo.people.operators import Operators, draw
 from ergo.rating.reasons import IMMOVABLE_N
-from ergo.strength.grip import grip_capability
+from ergo.strength.grip import GripCapability, grip_capability
 from ergo.strength.hand_capability import Bench, HandTask, Workplace, pack
 from ergo.strength.repetition import Repetition, repetition
 from ergo.study.model import Study
 
 Array = NDArray[np.float64]
+SCOUT_SEED = 0  # the scouts are the same people whatever the study's own seed
 
 
 @dataclass(frozen=True)
@@ -31,6 +33,7 @@ class Plan:
     task: HandTask
     repetition: Repetition
     bench: Bench
+    scouts: Bench
     grip_note: str
 
 
@@ -50,7 +53,17 @@ def plan(study: Study, library: Library, operators: Operators | None = None) -> 
         share=repeated.share,
         margin_min=study.targets.margin_min,
     )
-    held = grip_capability(
+    held = _held(study, people, library)
+    bench = pack(people, place, task, held.breakaway_across_n, held.slide_along_n, library)
+    ahead = people_of(study, library, count=SCOUTS, seed=SCOUT_SEED)
+    first = _held(study, ahead, library)
+    scouts = pack(ahead, place, task, first.breakaway_across_n, first.slide_along_n, library)
+    return Plan(study, library, machine, people, place, task, repeated, bench, scouts, held.not_covered)
+
+
+def _held(study: Study, people: Operators, library: Library) -> GripCapability:
+    """Return what people's hands hold on the study's grip."""
+    return grip_capability(
         people.women,
         people.age_years,
         people.hand,
@@ -62,12 +75,10 @@ def plan(study: Study, library: Library, operators: Operators | None = None) -> 
         glove=study.operators.glove,
         library=library,
     )
-    bench = pack(people, place, task, held.breakaway_across_n, held.slide_along_n, library)
-    return Plan(study, library, machine, people, place, task, repeated, bench, held.not_covered)
 
 
-def people_of(study: Study, library: Library) -> Operators:
-    """Return the operators that the study asks for."""
+def people_of(study: Study, library: Library, *, count: int = 0, seed: int | None = None) -> Operators:
+    """Return the operators that the study asks for; another `count` and `seed` of the same people where given."""
     asked = study.operators
     name = asked.population
     population: str | Path = Path(study.folder) / name if name.endswith(".csv") else name
@@ -75,8 +86,8 @@ def people_of(study: Study, library: Library) -> Operators:
         library,
         population,
         women_share=asked.women_share,
-        count=asked.count,
-        seed=asked.seed,
+        count=count or asked.count,
+        seed=asked.seed if seed is None else seed,
         hand=asked.hand,
         age_years=(asked.age_years[0], asked.age_years[1]),
         shoes_mm=asked.shoes_mm,

@@ -71,8 +71,8 @@ def evaluate(study: Study, *, library: Library | None = None, operators: Operato
     tables = library or shipped()
     tell(0.02, "drawing people")
     made = plan(study, tables, operators)
-    tell(0.1, "finding stances and postures")
-    capability = hand_capability(made.bench, made.task)
+    what = "finding stances and postures"
+    capability = hand_capability(made.bench, made.task, made.scouts, lambda share: tell(0.1 + 0.7 * share, what))
     posture = easiest_postures(made, capability)
     tell(0.8, "measuring gaps")
     gap = gaps(made, posture)

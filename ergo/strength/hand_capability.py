@@ -4,7 +4,8 @@ At one posture the capability is the smallest of what the joints, the shoulder g
 the strongest posture is taken at each position, inside the one stance that serves the whole stroke best.
 """
 
-from dataclasses import dataclass
+from collections.abc import Callable
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -12,8 +13,8 @@ from numpy.typing import NDArray
 from ergo.arm import kernels as k
 from ergo.arm.body import STANCE_TABLE, Support, body_columns
 from ergo.arm.joints import JointRanges
+from ergo.arm.scouts import SCOUTS, Problem, search
 from ergo.arm.segments import Segments
-from ergo.arm.stance_search import serve
 from ergo.datasets import Library
 from ergo.people.operators import Operators
 from ergo.strength.joint_moments import JointStrengths
@@ -166,7 +167,8 @@ def pack(people: Operators, place: Workplace, task: HandTask, breakaway_n: Array
     )
 
 
-def hand_capability(bench: Bench, task: HandTask) -> HandCapability:
+def hand_capability(bench: Bench, task: HandTask, scouts: Bench | None = None,
+                    tell: Callable[[float], None] | None = None) -> HandCapability:  # fmt: skip
     """Find stance, postures and capability of every operator.
 
     Parameters
@@ -175,6 +177,11 @@ def hand_capability(bench: Bench, task: HandTask) -> HandCapability:
         n operators, P positions, packed by `pack`.
     task : HandTask
         Demand (P,) [N]: positions that ask for nothing only have to be reached.
+    scouts : Bench, optional
+        People at the same place and task who are searched for first (see `ergo.arm.scouts`); else some of the
+        operators are.
+    tell : callable, optional
+        Called with the share done, 0..1; may raise to stop.
 
     Returns
     -------
@@ -184,25 +191,38 @@ def hand_capability(bench: Bench, task: HandTask) -> HandCapability:
     Notes
     -----
     A stance's worth is its worst position's force x share / demand; among postures the largest force counts.
-    The search misses a dense optimum by under 2 % in about nineteen of twenty random cases; what it misses are narrow
-    pockets (tests/arm/test_search_optimum.py), so a capability is never too high, sometimes too low.
+    What the search misses are narrow pockets and ridges (figures in tests/arm/test_search_optimum.py), so a
+    capability is never too high, sometimes too low.
     """
-    n, positions = bench.ops.shape[0], bench.targets.shape[0]
     asks = task.demand_n > 1e-6
-    weights = np.where(asks, task.share / np.maximum(task.demand_n, 1e-6), 1e6)
-    needs = np.where(asks, task.demand_n * task.margin_min / max(task.share, 1e-9), 0.0)
-    out, codes = np.zeros((n, positions, 8)), np.zeros((n, positions), dtype=np.int64)
-    stances = np.zeros((n, 2))
-    serve(bench.ops, bench.shape, bench.scene, bench.limits, bench.windows, bench.targets, weights, needs, out, codes,
-          stances)  # fmt: skip
-    reached = out[:, :, 3] >= 0.0
+    problem = Problem(
+        shape=bench.shape, scene=bench.scene, limits=bench.limits, targets=bench.targets,
+        weights=np.where(asks, task.share / np.maximum(task.demand_n, 1e-6), 1e6),
+        needs=np.where(asks, task.demand_n * task.margin_min / max(task.share, 1e-9), 0.0),
+    )  # fmt: skip
+    ahead = scouts or _some_of(bench)
+    found = search(problem, bench.ops, bench.windows, ahead.ops, ahead.windows, tell or _silent)
+    force = found.postures[:, :, 3]
+    reached = force >= 0.0
     return HandCapability(
-        force_n=np.where(reached, out[:, :, 3], 0.0),
+        force_n=np.where(reached, force, 0.0),
         reached=reached,
-        shortfall_m=np.maximum(-out[:, :, 3] - 1.0, 0.0),
-        limit=codes,
-        strongest=out[:, :, 0:3].copy(),
-        easiest=out[:, :, 4:7].copy(),
-        easiest_force_n=np.maximum(out[:, :, 7], 0.0),
-        stance=stances,
+        shortfall_m=np.maximum(-force - 1.0, 0.0),
+        limit=found.limits,
+        strongest=found.postures[:, :, 0:3].copy(),
+        easiest=found.postures[:, :, 4:7].copy(),
+        easiest_force_n=np.maximum(found.postures[:, :, 7], 0.0),
+        stance=found.stances,
     )
+
+
+def _some_of(bench: Bench) -> Bench:
+    """Return a bench with some of the operators, evenly spread over the rows."""
+    count = bench.ops.shape[0]
+    rows = np.unique(np.linspace(0, count - 1, min(count, SCOUTS)).astype(np.int64))
+    rows = np.repeat(rows, 2) if rows.size == 1 else rows
+    return replace(bench, ops=bench.ops[rows], windows=bench.windows[rows])
+
+
+def _silent(share: float) -> None:
+    """Tell nobody."""

@@ -16,7 +16,7 @@ from scipy.optimize import minimize
 sys.path.insert(0, str(Path(__file__).resolve().parents[2]))
 
 import ergo
-from ergo.arm.posture_search import judge_posture
+from ergo.arm.posture_limits import COLUMNS, judge_posture
 from ergo.evaluation.plan import plan
 from ergo.strength.hand_capability import hand_capability
 from tests.arm import numpy_twin
@@ -25,10 +25,10 @@ from tests.arm.made_operators import LIMITS, SHAPE, operators, scene, targets
 
 @njit
 def many(op, shape, view, limits, path, count):
-    total = 0.0
+    total, row = 0.0, np.zeros(COLUMNS)
     for n in range(count):
         bend = 0.3 + 1e-7 * n
-        total += judge_posture(op, shape, view, limits, 0.0, -0.35, path[n % path.shape[0]], 0.3, bend, 0.5)[0]
+        total += judge_posture(op, shape, view, limits, 0.0, -0.35, path[n % path.shape[0]], 0.3, bend, 0.5, row)[0]
     return total
 
 
@@ -84,7 +84,7 @@ def engine(count):
     study = ergo.read_study("gasket_punch").with_values({"operators.count": count})
     made = plan(study, ergo.library())
     start = time.perf_counter()
-    hand_capability(made.bench, made.task)
+    hand_capability(made.bench, made.task, made.scouts)
     return time.perf_counter() - start
 
 

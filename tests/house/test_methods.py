@@ -15,6 +15,8 @@ LISTED = {(row["room"], row["file"]) for row in ROWS}
 # Files that pack, read, report or compile what the methods use, and hold no method of their own.
 NO_METHOD = {
     ("arm", "compiled.py"): "where compiled kernels are kept",
+    ("arm", "crowd_search.py"): "the kernel of scouts.py",
+    ("arm", "outlines.py"): "the kernel of posture.py",
     ("letgo", "parameters.py"): "reads rows",
     ("mechanism", "linkage.py"): "the face of the linkages",
     ("people", "own_table.py"): "reads a user's table",

@@ -9,6 +9,7 @@ import pytest
 
 from ergo.arm import kernels as k
 from ergo.arm.body import Support
+from ergo.arm.posture_limits import COLUMNS, arm_limits, verdict
 from ergo.datasets import library
 from ergo.people.operators import draw
 from ergo.strength.hand_capability import LIMITS, HandTask, Workplace, pack
@@ -43,8 +44,10 @@ def seated_force(bench, op, elbow_deg, direction):
     target = np.array([*grip, *direction, 0.0, 0.0, 1.0])
     best = min(np.linspace(-1.2, 1.2, 25), key=lambda s: abs(upper_arm_x(op, line, s)))
     best = min(np.linspace(best - 0.1, best + 0.1, 21), key=lambda s: abs(upper_arm_x(op, line, s)))
-    force, code, _ = k.judge_arm(op, bench.shape, bench.limits, False, (*shoulder, 0.0), (-0.6, 0.5, 0.0, 1.0), target,
-                                 np.cos(best), np.sin(best), k.NO_LIMIT, -1)  # fmt: skip
+    row = np.zeros(COLUMNS)
+    arm_limits(op, bench.shape, bench.limits, False, (*shoulder, 0.0), (-0.6, 0.5, 0.0, 1.0), target, np.cos(best), np.sin(best),
+               row)  # fmt: skip
+    force, code = verdict(row)
     along = float(line @ np.array(direction)) / np.linalg.norm(line)
     girdle = op[k.GIRDLE_PUSH] / along if along > 1e-6 else (op[k.GIRDLE_PULL] / -along if along < -1e-6 else 1e9)
     return (girdle, k.LIMIT_GIRDLE) if girdle < force else (force, code)

@@ -66,9 +66,9 @@ def test_nobody_gives_more_than_the_floor_holds(mu, way, leaning):
     force, limit = given(mu, way, leaning)
     floor_n = mu * men().mass_kg * GRAVITY
     assert (force <= floor_n * (1 + 1e-9)).all()
-    # A level force slips exactly where it meets friction times weight.
+    # A level force slips where it meets friction times weight; a stance limit is named from 98 % of it on.
     slips = limit == "slipping"
-    assert force[slips] == pytest.approx(floor_n[slips], rel=1e-9)
+    assert (force[slips] >= 0.98 * floor_n[slips]).all()
 
 
 @pytest.mark.parametrize("way", ["pull", "push"])
