@@ -1,38 +1,40 @@
 """What can be wrong between the keys of a study whose single keys are sound."""
 
-from collections.abc import Callable, Iterator
+import difflib
+from collections.abc import Callable, Iterator, Set
 
 import numpy as np
 
-from ergo.datasets import library, table_keys
+from ergo.datasets import library
 from ergo.errors import Problem
 from ergo.frames import pivot_axis
-from ergo.letgo import structure
-from ergo.load import drilling, press_fit
 from ergo.mechanism import friction as rubbing
 from ergo.mechanism.drive import slide_travel_m
 from ergo.mechanism.linkage import FixedPin
-from ergo.study.machine import CurvedLinkage
-from ergo.study.model import Study
+from ergo.study.loads import ConstantLoadSection
+from ergo.study.machine import CurvedLinkage, HandleLinkage
+from ergo.study.model import Study, schema
+from ergo.study.paths import steps
 from ergo.study.sections import POPULATIONS
 from ergo.study.trade import friction_of, lever_of, linkage_of, load_of, path_of, zones_of
 
 Check = Callable[[Study], Iterator[Problem]]
 # A person cannot stand with the trunk nearer to the path than this; nobody works behind their own back.
 BODY_DEPTH_MM = 150.0
+FULL_TURN_RAD, SMALL_STROKE_DEG = 6.3, 2.0
 
 
-def cross_checks(study: Study, *, partial: bool = False) -> list[Problem]:
-    """Return every problem between keys; with `partial` those of missing sections are left to others."""
-    checks: list[Check] = [_bench, _people, _grip, _zones, _touch_points, _targets, _structure]
+def cross_checks(study: Study, sick: Set[str] = frozenset()) -> list[Problem]:
+    """Return every problem between keys, leaving out the checks that lean on a section known to be sick."""
+    return [p for check, needs in _CHECKS if not needs & sick for p in check(study)]
+
+
+def _there(study: Study) -> Iterator[Problem]:
+    """Yield what is neither given nor can be left out."""
     if study.path is None and study.lever is None:
-        if not partial:
-            return [p for check in checks for p in check(study)] + [
-                Problem("lever", "is missing", "", "a [lever] section, or a [path] section with a measured path")
-            ]
-        return [p for check in (_bench, _people, _grip, _zones, _targets) for p in check(study)]
-    checks += [_path] if study.path is not None else [_lever, _load, _mechanism]
-    return [p for check in (*checks, _handle_place) for p in check(study)]
+        yield Problem("lever", "is missing", "", "a [lever] section, or a [path] section with a measured path")
+    elif study.path is None and "load" not in study.model_fields_set:
+        yield Problem("load", "is missing", "", 'a [load] section, such as kind = "constant", force_n = 60')
 
 
 def _bench(study: Study) -> Iterator[Problem]:
@@ -56,9 +58,7 @@ def _people(study: Study) -> Iterator[Problem]:
     if asked.brace == "bench edge" and asked.posture == "seated":
         yield Problem("operators.brace", "a bench edge braces only a standing operator", "bench edge", "none, seat back")
     name = asked.population
-    if not name.endswith(".csv") and name not in (*POPULATIONS, *table_keys()):
-        import difflib
-
+    if not name.endswith(".csv") and name not in POPULATIONS:
         near = difflib.get_close_matches(name, POPULATIONS, 1)
         allowed = ", ".join(POPULATIONS) + ", or a CSV file"
         yield Problem("operators.population", "is no population", name, allowed, f"did you mean {near[0]}?" if near else "")
@@ -94,7 +94,8 @@ def _body_at_rest(study: Study) -> np.ndarray:
 
 
 def _touch_points(study: Study) -> Iterator[Problem]:
-    behind = -study.operators.stand_off_mm[1] - 400.0
+    asked = study.operators
+    behind = (asked.seat_y_mm if asked.posture == "seated" else -asked.stand_off_mm[1]) - 400.0
     for n, point in enumerate(study.touch_points):
         if point.at_mm[1] < behind:
             yield Problem(f"touch_points[{n}].at_mm", "lies behind the operator", f"y = {point.at_mm[1]:g}",
@@ -102,26 +103,43 @@ def _touch_points(study: Study) -> Iterator[Problem]:
 
 
 def _targets(study: Study) -> Iterator[Problem]:
-    from ergo.study.model import schema
+    for path, bounds in study.targets.free.items():
+        yield from _free(study, path, bounds)
 
-    known = {r["path"] for r in schema()}
-    for path, (low, high) in study.targets.free.items():
-        if path.split("[")[0] not in known:
-            yield Problem(f"targets.free.{path}", "is not a key of a study")
-        elif low > high:
-            yield Problem(f"targets.free.{path}", "the first bound must not exceed the second", f"{low:g}, {high:g}")
+
+def _free(study: Study, path: str, bounds: tuple[float, float]) -> Iterator[Problem]:
+    """Yield why a key may not be left free, or not between these bounds."""
+    where, (low, high), way = f"targets.free.{path}", bounds, steps(path)
+    names = ".".join(step for step in way or () if isinstance(step, str))
+    rows = [r for r in schema() if r["path"] == names]
+    if not rows:
+        near = difflib.get_close_matches(names, sorted({r["path"] for r in schema()}), 1)
+        yield Problem(where, "is not a key of a study", "", "", f"did you mean {near[0]}?" if near else "")
+        return
+    kinds = {"linkage": study.linkage.kind, "load": study.load.kind}
+    row = next((r for r in rows if r["of_kind"] in ("", kinds.get(r["section"], r["of_kind"]))), None)
+    if row is None:
+        yield Problem(where, f"does not belong to a {kinds[rows[0]['section']]}", "", f"a {rows[0]['of_kind']}")
+    elif row["kind"] not in ("number", "whole", "point", "pair"):
+        yield Problem(where, "is no number", row["kind"], "keys with a number")
+    elif row["kind"] in ("point", "pair") and not path.endswith("]"):
+        yield Problem(where, "is more than one number", "", f"one of them, such as {path}[0]")
+    elif low > high:
+        yield Problem(where, "the first bound must not exceed the second", f"{low:g}, {high:g}")
+    elif row["low"] is not None and (low < row["low"] or high > row["high"]):
+        allowed = f"{row['low']:g} to {row['high']:g} {row['unit']}".strip()
+        yield Problem(where, "reaches outside the key's range", f"{low:g} to {high:g}", allowed)
 
 
 def _structure(study: Study) -> Iterator[Problem]:
     made = study.structure
     if made is None:
         return
-    known, threads = structure.materials(library()), structure.threads(library())
-    for name in ("lever_material", "pin_material"):
-        if getattr(made, name) not in known:
-            yield Problem(f"structure.{name}", "is not a known material", getattr(made, name), ", ".join(known))
-    if made.pin_thread is not None and made.pin_thread not in threads:
-        yield Problem("structure.pin_thread", "is no coarse metric thread", made.pin_thread, ", ".join(threads))
+    pairs = {"rectangular": ("lever_width_mm", "lever_depth_mm"), "tube": ("lever_diameter_mm", "wall_mm")}
+    given = [name for name in pairs.get(made.lever_section, ()) if getattr(made, name) is not None]
+    if len(given) == 1:
+        other = next(name for name in pairs[made.lever_section] if name not in given)
+        yield Problem(f"structure.{other}", f"is missing: a {made.lever_section} section needs it beside {given[0]}")
     if made.wall_mm is not None and made.lever_diameter_mm is not None and 2.0 * made.wall_mm >= made.lever_diameter_mm:
         yield Problem("structure.wall_mm", "leaves no bore in the tube", f"{made.wall_mm:g}",
                       f"below {0.5 * made.lever_diameter_mm:g} mm")  # fmt: skip
@@ -137,12 +155,19 @@ def _lever(study: Study) -> Iterator[Problem]:
             return
         pivot_axis(made.axis)
     yield from lever_of(study).problems()
-    if abs(made.end_deg - made.start_deg) > 360.0:
+    turned = abs(made.end_deg - made.start_deg)
+    if 0.0 < turned < SMALL_STROKE_DEG and max(abs(made.start_deg), abs(made.end_deg)) <= FULL_TURN_RAD:
+        meant = " and ".join(f"{np.rad2deg(v):.0f}" for v in (made.start_deg, made.end_deg))
+        yield Problem("lever.end_deg", "makes a stroke that is too small for a hand", f"{turned:g} degrees",
+                      f"{SMALL_STROKE_DEG:g} degrees and over", f"did you mean {meant} degrees? (it looks like rad)")  # fmt: skip
+    if turned > 360.0:
         yield Problem("lever.end_deg", "is more than one turn from the start", f"{made.end_deg:g}", "within 360 degrees")
 
 
 def _load(study: Study) -> Iterator[Problem]:
-    load, shaft, lib = study.load, study.linkage.kind == "shaft", library()
+    load, shaft = study.load, study.linkage.kind == "shaft"
+    if study.path is not None or "load" not in study.model_fields_set:
+        return
     if load.kind == "constant":
         wanted, other = ("torque_nm", "force_n") if shaft else ("force_n", "torque_nm")
         if getattr(load, wanted) is None:
@@ -153,16 +178,14 @@ def _load(study: Study) -> Iterator[Problem]:
     if shaft:
         yield Problem("load.kind", "a shaft takes a torque", load.kind, "constant, with torque_nm")
         return
-    try:
-        yield from load_of(study, lib).problems()
-    except ValueError as error:
-        known = drilling.materials(lib) if load.kind == "drilling" else press_fit.materials(lib)
-        yield Problem("load.material", str(error), "", ", ".join(known))
+    yield from load_of(study, library()).problems()
 
 
 def _mechanism(study: Study) -> Iterator[Problem]:
     """Yield what keeps the linkage from its stroke, or the load from covering it."""
     made = study.linkage
+    if study.path is not None or study.lever is None:
+        return
     if isinstance(made, CurvedLinkage) and (made.file is None) == (made.constant_ratio_mm_per_deg is None):
         yield Problem("linkage", "a curved slot needs either file or constant_ratio_mm_per_deg")
         return
@@ -187,16 +210,20 @@ def _mechanism(study: Study) -> Iterator[Problem]:
 
 
 def _path(study: Study) -> Iterator[Problem]:
-    if study.lever is not None:
-        yield Problem("path", "stands in place of lever, linkage and load", "both [path] and [lever]", "one of them")
-    if study.path is not None and len(study.path.rows) < 2:
+    if study.path is None:
+        return
+    left_out = {"lever": None, "linkage": HandleLinkage(), "load": ConstantLoadSection(kind="constant", force_n=0.0)}
+    for name, nothing in left_out.items():
+        if getattr(study, name) != nothing:
+            yield Problem("path", "stands in place of lever, linkage and load", f"both [path] and [{name}]", "one of them")
+    if len(study.path.rows) < 2:
         yield Problem("path.file", "needs at least two rows")
 
 
 def _handle_place(study: Study) -> Iterator[Problem]:
     """Yield where the handle path runs through the floor, or through any place the operator could be in."""
     where = "path.file" if study.path is not None else "lever.pivot_mm"
-    if study.path is None and any(True for _ in _lever(study)):
+    if study.path is None and (study.lever is None or any(True for _ in _lever(study))):
         return
     if study.path is not None and len(study.path.rows) < 2:
         return
@@ -213,3 +240,24 @@ def _handle_place(study: Study) -> Iterator[Problem]:
     if np.abs(grip[:, 0]).max() > side:
         yield Problem(where, "the handle path is out of anybody's reach sideways",
                       f"x = {grip[np.abs(grip[:, 0]).argmax(), 0]:.0f} mm", f"within {side:.0f} mm")  # fmt: skip
+
+
+# Each check with the sections that it leans on.
+_CHECKS: tuple[tuple[Check, frozenset[str]], ...] = tuple(
+    (check, frozenset(needs.split()))
+    for check, needs in (
+        (_there, "lever load path"),
+        (_bench, "bench"),
+        (_people, "operators bench"),
+        (_grip, "grip"),
+        (_zones, "zones operators"),
+        (_touch_points, "touch_points operators"),
+        (_targets, "targets linkage load"),
+        (_structure, "structure"),
+        (_path, "path lever linkage load"),
+        (_lever, "lever"),
+        (_load, "load linkage path"),
+        (_mechanism, "study lever linkage load path"),
+        (_handle_place, "study lever grip path operators"),
+    )
+)

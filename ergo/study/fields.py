@@ -15,10 +15,11 @@ class Section(BaseModel):
 
 
 def key(default: Any, help_text: str, *, unit: str = "", low: float | None = None, high: float | None = None,
-        choices: tuple[str, ...] = ()) -> Any:  # fmt: skip
+        least: float = 0.0, choices: tuple[str, ...] = ()) -> Any:  # fmt: skip
     """Return a field of the study: its default (`...` where it must be given) and what is known about it.
 
-    The reader checks `low` and `high`; the template, the report and the board's controls show all of it.
+    The reader checks `low` and `high`; the template, the report and the board's controls show all of it. A size that
+    is not zero but below `least` is a slip of unit, not a size (of a point or pair: where all its numbers are).
     """
-    extra = {"unit": unit, "help": help_text, "low": low, "high": high, "choices": list(choices)}
+    extra = {"unit": unit, "help": help_text, "low": low, "high": high, "least": least, "choices": list(choices)}
     return Field(default, json_schema_extra=extra)

@@ -6,6 +6,11 @@ from pydantic import Field
 
 from ergo.study.fields import Pair, Section, key
 
+# The rows of drilling_materials_mh31 and elastic_constants; a test holds them against the tables.
+DRILLED = ("steel 200 HB", "steel 300 HB", "cast iron 150 HB", "aluminium alloy", "brass", "leaded brass")
+PRESSED = ("steel", "stainless steel", "grey cast iron", "aluminium alloy", "brass", "bronze", "copper")
+WEAR = ("sharp", "normal", "dull")
+
 
 class LetGo(Section):
     """What any load may carry."""
@@ -43,9 +48,10 @@ class DrillingLoadSection(LetGo):
     kind: Literal["drilling"]
     diameter_mm: float = key(..., "drill diameter", unit="mm", low=1.6, high=16)
     feed_mm_per_rev: float = key(..., "feed a turn", unit="mm", low=0.01, high=0.5)
-    material: str = key("steel 200 HB", "material drilled")
-    point: str = key("standard", "drill point", choices=("standard", "split"))
-    wear: str | float = key("sharp", "state of the drill, or a wear factor")
+    material: str = key("steel 200 HB", "material drilled", choices=DRILLED)
+    point: Literal["standard", "split"] = key("standard", "drill point", choices=("standard", "split"))
+    wear: Literal["sharp", "normal", "dull"] | float = key("sharp", "state of the drill, or a wear factor", low=1, high=5,
+                                                           choices=WEAR)  # fmt: skip
 
 
 class PressFitLoadSection(LetGo):
@@ -56,8 +62,8 @@ class PressFitLoadSection(LetGo):
     hub_mm: float = key(..., "outer diameter of the hub", unit="mm", low=1, high=1000)
     length_mm: float = key(..., "length of the fit", unit="mm", low=0.5, high=500)
     interference_um: float = key(..., "interference on diameter", unit="um", low=0, high=500)
-    material_shaft: str = key("steel", "material of the shaft")
-    material_hub: str = key("steel", "material of the hub")
+    material_shaft: str = key("steel", "material of the shaft", choices=PRESSED)
+    material_hub: str = key("steel", "material of the hub", choices=PRESSED)
     friction: float = key(0.12, "friction while pressing in", low=0.01, high=1)
 
 

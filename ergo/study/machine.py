@@ -7,13 +7,17 @@ from pydantic import Field
 from ergo.study.fields import Pair, Point, Section, key
 
 AXES = ("sideways", "fore-aft", "upright")
+# The rows of lever_materials and metric_threads_coarse; a test holds them against the tables.
+METALS = ("S235JR", "S355J2", "C45+N", "42CrMo4+QT", "X5CrNi18-10", "EN AW-6082 T6", "EN-GJL-250", "EN-GJS-400-15",
+          "class 4.6", "class 5.8", "class 8.8", "class 10.9", "class 12.9", "A2-70")  # fmt: skip
+THREADS = ("M3", "M4", "M5", "M6", "M8", "M10", "M12", "M14", "M16", "M18", "M20", "M22", "M24")
 
 
 class LeverSection(Section):
     """`[lever]`: the lever, its pivot and its stroke."""
 
     pivot_mm: Point = key(..., "pivot point: right of the middle, behind the bench edge, over the floor", unit="mm",
-                          low=-3000, high=3000)  # fmt: skip
+                          low=-3000, high=3000, least=5)  # fmt: skip
     axis: Literal["sideways", "fore-aft", "upright"] | Point = key("sideways", "pivot axis, or a vector", choices=AXES)
     length_mm: float = key(..., "pivot to the grip's centre", unit="mm", low=20, high=2000)
     start_deg: float = key(..., "lever angle at the start of the stroke", unit="deg", low=-360, high=360)
@@ -45,11 +49,12 @@ class GripSection(Section):
 class Rubbing(Section):
     """Friction keys that any linkage may carry."""
 
-    pin_radius_mm: float = key(0.0, "radius of pivot and link pins", unit="mm", low=0, high=200)
+    pin_radius_mm: float = key(0.0, "radius of pivot and link pins", unit="mm", low=0, high=200, least=0.1)
     pin_friction: float = key(0.0, "friction in the pins", low=0, high=1.5)
     slide_friction: float = key(0.0, "friction of the slide", low=0, high=1.5)
-    slide_bearing_mm: float = key(0.0, "length of the slide's guide", unit="mm", low=0, high=2000)
-    slide_overhang_mm: float = key(0.0, "driving force beside the guide's middle line", unit="mm", low=0, high=2000)
+    slide_bearing_mm: float = key(0.0, "length of the slide's guide", unit="mm", low=0, high=2000, least=0.5)
+    slide_overhang_mm: float = key(0.0, "driving force beside the guide's middle line", unit="mm", low=0, high=2000,
+                                   least=0.1)  # fmt: skip
     tool_mass_kg: float = key(0.0, "mass that moves with the slide", unit="kg", low=0, high=500)
 
 
@@ -140,8 +145,8 @@ class BoxZone(Section):
     name: str = key(..., "what it is called")
     role: Literal["hazard", "obstacle"] = key("hazard", "hazard or obstacle", choices=("hazard", "obstacle"))
     shape: Literal["box"]
-    centre_mm: Point = key(..., "middle of the box", unit="mm", low=-5000, high=5000)
-    size_mm: Point = key(..., "full sizes of the box", unit="mm", low=0, high=5000)
+    centre_mm: Point = key(..., "middle of the box", unit="mm", low=-5000, high=5000, least=5)
+    size_mm: Point = key(..., "full sizes of the box", unit="mm", low=0, high=5000, least=0.5)
 
 
 class CylinderZone(Section):
@@ -150,9 +155,9 @@ class CylinderZone(Section):
     name: str = key(..., "what it is called")
     role: Literal["hazard", "obstacle"] = key("hazard", "hazard or obstacle", choices=("hazard", "obstacle"))
     shape: Literal["cylinder"]
-    from_mm: Point = key(..., "middle of one end", unit="mm", low=-5000, high=5000)
-    to_mm: Point = key(..., "middle of the other end", unit="mm", low=-5000, high=5000)
-    radius_mm: float = key(..., "radius", unit="mm", low=0, high=3000)
+    from_mm: Point = key(..., "middle of one end", unit="mm", low=-5000, high=5000, least=5)
+    to_mm: Point = key(..., "middle of the other end", unit="mm", low=-5000, high=5000, least=5)
+    radius_mm: float = key(..., "radius", unit="mm", low=0, high=3000, least=0.5)
 
 
 class BallZone(Section):
@@ -161,8 +166,8 @@ class BallZone(Section):
     name: str = key(..., "what it is called")
     role: Literal["hazard", "obstacle"] = key("hazard", "hazard or obstacle", choices=("hazard", "obstacle"))
     shape: Literal["ball"]
-    centre_mm: Point = key(..., "middle of the ball", unit="mm", low=-5000, high=5000)
-    radius_mm: float = key(..., "radius", unit="mm", low=0, high=3000)
+    centre_mm: Point = key(..., "middle of the ball", unit="mm", low=-5000, high=5000, least=5)
+    radius_mm: float = key(..., "radius", unit="mm", low=0, high=3000, least=0.5)
 
 
 AnyZone = Annotated[BoxZone | CylinderZone | BallZone, Field(discriminator="shape")]
@@ -172,7 +177,7 @@ class TouchPoint(Section):
     """`[[touch_points]]`: another control that the hand goes to."""
 
     name: str = key(..., "what it is called")
-    at_mm: Point = key(..., "where it is", unit="mm", low=-5000, high=5000)
+    at_mm: Point = key(..., "where it is", unit="mm", low=-5000, high=5000, least=5)
 
 
 class Structure(Section):
@@ -187,11 +192,11 @@ class Structure(Section):
     lever_depth_mm: float | None = key(None, "depth of a rectangular section, in the lever's plane", unit="mm",
                                        low=2, high=300)  # fmt: skip
     wall_mm: float | None = key(None, "wall of a tube", unit="mm", low=0.5, high=50)
-    lever_material: str = key("S235JR", "material of the lever")
+    lever_material: str = key("S235JR", "material of the lever", choices=METALS)
     pin_diameter_mm: float | None = key(None, "diameter of the pivot pin", unit="mm", low=2, high=100)
     pin_shear: Literal["single", "double"] = key("double", "shear planes of the pin", choices=("single", "double"))
-    pin_thread: str | None = key(None, "thread in the shear plane, such as M8")
-    pin_material: str = key("S235JR", "material of the pin")
+    pin_thread: str | None = key(None, "thread in the shear plane, such as M8", choices=THREADS)
+    pin_material: str = key("S235JR", "material of the pin", choices=METALS)
 
 
 class PathSection(Section):

@@ -1,5 +1,6 @@
 """The study: one frozen object whose attributes are the keys of the study file (mm, N, degrees)."""
 
+import functools
 import hashlib
 import json
 from typing import Any
@@ -55,9 +56,10 @@ class Study(Section):
         return self.model_dump(mode="json", exclude_none=True)
 
     def digest(self) -> str:
-        """Return a checksum of the content and of every CSV row it refers to."""
+        """Return a checksum of the content and of all that stands in the CSV files it refers to."""
         rows = [getattr(part, "rows", ()) for part in (self.linkage, self.load, self.path)]
-        text = json.dumps([self.content(), rows], sort_keys=True)
+        own_people = [self.operators.population_checksum] if self.operators.population_checksum else []
+        text = json.dumps([self.content(), rows, *own_people], sort_keys=True)
         return hashlib.sha256(text.encode()).hexdigest()
 
     def with_values(self, values: dict[str, Any]) -> "Study":
@@ -80,17 +82,27 @@ class Study(Section):
         raise KeyError(name)
 
     def as_toml(self) -> str:
-        """Return the study as a study file, keys in a fixed order."""
+        """Return the study as a study file, keys in a fixed order; it reads back as the same study."""
         import tomli_w
 
-        return tomli_w.dumps(self.content())
+        content = self.content()
+        if self.path is not None:
+            content = {section: part for section, part in content.items() if section not in ("linkage", "load")}
+        return tomli_w.dumps(content)
 
 
 def schema() -> list[dict[str, Any]]:
-    """Return every key of the study file: section, path, kind, unit, low, high, choices, help, default, required.
+    """Return every key of the study file, one row a key.
 
-    Sections that come in kinds (linkage, load, zones) list each kind's keys with `of_kind`.
+    Each has section, of_kind (in linkage, load and zones: the kind that has the key), path, name, kind (of value:
+    choice, flag, number, whole, text, pair, point, numbers, table), also (what may stand in place of a choice),
+    required, default, unit, help, low, high, least and choices.
     """
+    return [dict(row) for row in _described()]
+
+
+@functools.cache
+def _described() -> tuple[dict[str, Any], ...]:
     found: list[dict[str, Any]] = []
     for section, field in Study.model_fields.items():
         if field.exclude:
@@ -100,7 +112,17 @@ def schema() -> list[dict[str, Any]]:
             for name, inner in model.model_fields.items():
                 if not inner.exclude and isinstance(inner.json_schema_extra, dict):
                     found.append(_row(section, kind if section in ("linkage", "load", "zones") else "", name, inner))
-    return found
+    return tuple(found)
+
+
+@functools.cache
+def hidden() -> frozenset[tuple[str, str]]:
+    """Return the (section, name) that a study keeps for itself and no file may set; at the top the section is empty."""
+    found = {("", name) for name, field in Study.model_fields.items() if field.exclude}
+    for section, field in Study.model_fields.items():
+        for model in _models(field.annotation):
+            found |= {(section, name) for name, inner in model.model_fields.items() if inner.exclude}
+    return frozenset(found)
 
 
 def _tag(model: type[BaseModel]) -> str:
@@ -120,6 +142,7 @@ def _row(section: str, kind: str, name: str, field: Any) -> dict[str, Any]:
         "path": f"{section}.{name}",
         "name": name,
         "kind": _kind_of(field),
+        "also": _also(field),
         "required": field.is_required(),
         "default": default,
         **field.json_schema_extra,
@@ -136,6 +159,14 @@ def _kind_of(field: Any) -> str:
         if mark in text:
             return kind
     return "text"
+
+
+def _also(field: Any) -> str:
+    """Return what may stand in place of a choice: three numbers, a number, or nothing."""
+    text = str(field.annotation)
+    if "Literal" not in text or "float" not in text:
+        return ""
+    return "three numbers" if "float, float, float" in text else "a number"
 
 
 def _models(annotation: Any) -> list[type[BaseModel]]:

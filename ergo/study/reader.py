@@ -1,6 +1,6 @@
 """The reader of study files: the one validator. It collects all problems, then raises one StudyError."""
 
-import copy
+import re
 import tomllib
 from pathlib import Path
 from typing import Any
@@ -10,10 +10,13 @@ from pydantic import ValidationError
 from ergo.errors import Problem, StudyError
 from ergo.study.checks import cross_checks
 from ergo.study.model import Study
-from ergo.study.problems import range_problems, structure_problems
+from ergo.study.paths import set_values
+from ergo.study.problems import structure_problems, value_problems
 from ergo.study.rows import attach_rows
 
 LARGEST_FILE = 1_000_000
+# So many problems are told at once; more say the same again.
+MOST_PROBLEMS = 200
 
 
 def read(path: str | Path) -> Study:
@@ -38,7 +41,9 @@ def read_text(text: str, folder: str | Path = ".", name: str = "study") -> Study
     """
     try:
         data = tomllib.loads(text)
-    except tomllib.TOMLDecodeError as error:
+    except RecursionError as error:
+        raise StudyError([Problem(name, "is not a TOML file that can be read: it is nested too deeply")]) from error
+    except ValueError as error:
         raise StudyError([Problem(name, f"is not a TOML file: {error}")]) from error
     return build(data, folder, name)
 
@@ -52,11 +57,19 @@ def build(data: dict[str, Any], folder: str | Path = ".", name: str = "study") -
         With every problem.
     """
     study, problems = _attempt(data, str(folder), name)
-    if study is not None and not problems:
-        problems = _variant_problems(data, study, str(folder), name)
     if study is None or problems:
-        raise StudyError([_located(p, name) for p in problems])
+        raise _told(problems, name)
+    if problems := _variant_problems(study):
+        raise _told(problems, name)
     return study
+
+
+def _told(problems: list[Problem], name: str) -> StudyError:
+    """Return the error that tells all problems, each with the file's name before its place."""
+    told = [Problem(f"{name}: {p.where}", p.what, p.got, p.allowed, p.suggestion) for p in problems[:MOST_PROBLEMS]]
+    if len(problems) > MOST_PROBLEMS:
+        told.append(Problem(name, f"has {len(problems) - MOST_PROBLEMS} more problems"))
+    return StudyError(told)
 
 
 def changed(study: Study, values: dict[str, Any]) -> Study:
@@ -72,39 +85,28 @@ def changed(study: Study, values: dict[str, Any]) -> Study:
         found, problems = _attempt(data, study.folder, study.name)
         if found is not None and not problems:
             return found.model_copy(update={"variant_name": study.variant_name})
-    raise StudyError([_located(p, study.name) for p in problems])
-
-
-def set_values(data: dict[str, Any], values: dict[str, Any]) -> tuple[dict[str, Any], list[Problem]]:
-    """Return a deep copy of study data with other values at dotted keys, and the keys that cannot be set."""
-    made, problems = copy.deepcopy(data), []
-    for path, value in values.items():
-        *parents, last = path.split(".")
-        place: Any = made
-        for parent in parents:
-            place = place.setdefault(parent, {}) if isinstance(place, dict) else None
-        if not parents or not isinstance(place, dict):
-            problems.append(Problem(path, "is no key of a study", "", "section.key, such as lever.length_mm"))
-        else:
-            place[last] = list(value) if isinstance(value, tuple) else value
-    return made, problems
+    raise _told(problems, study.name)
 
 
 def _text_of(place: Path) -> str:
     try:
-        size = place.stat().st_size
         if place.is_dir():
             raise StudyError([Problem(str(place), "is a folder, not a study file")])
-        if size > LARGEST_FILE:
+        with place.open("rb") as opened:
+            content = opened.read(LARGEST_FILE + 1)
+        if len(content) > LARGEST_FILE:
+            size = max(place.stat().st_size, len(content))
             raise StudyError([Problem(str(place), "is too large for a study", f"{size} bytes", f"up to {LARGEST_FILE}")])
-        return place.read_text(encoding="utf-8")
+        return content.decode("utf-8-sig")
     except FileNotFoundError as error:
         hint = "name a file, or a shipped study: " + ", ".join(_shipped())
         raise StudyError([Problem(str(place), "there is no such file", suggestion=hint)]) from error
     except UnicodeDecodeError as error:
         raise StudyError([Problem(str(place), f"is not UTF-8 text (byte {error.start})")]) from error
     except OSError as error:
-        raise StudyError([Problem(str(place), f"cannot be read: {error.strerror}")]) from error
+        raise StudyError([Problem(str(place)[:200], f"cannot be read: {error.strerror}")]) from error
+    except ValueError as error:
+        raise StudyError([Problem(repr(str(place))[:200], "is no name of a file")]) from error
 
 
 def _shipped() -> list[str]:
@@ -114,48 +116,48 @@ def _shipped() -> list[str]:
 
 
 def _attempt(data: dict[str, Any], folder: str, name: str) -> tuple[Study | None, list[Problem]]:
-    """Return the study, if there is one, and all problems but those of its variants."""
-    problems = range_problems(data)
-    bad_ranges = {p.where for p in problems}
+    """Return the study, if there is one, and all problems but those of its variants.
+
+    What is wrong between sections is told as far as it does not lean on a section that is itself sick, so that one
+    reading tells everything and no problem is only the shadow of another.
+    """
+    problems = value_problems(data)
+    known = {p.where for p in problems}
+    study: Study | None = None
     try:
         study = Study.model_validate({**data, "folder": folder, "name": name})
     except ValidationError as error:
-        found = structure_problems(error, data)
-        problems += [p for p in found if p.where not in bad_ranges]
-        return None, problems + _beyond_structure(data, folder, name, problems)
-    study, row_problems = attach_rows(study)
-    problems += row_problems
-    sick = {p.where.split(".")[0] for p in problems}
-    return study, problems + [p for p in cross_checks(study) if p.where.split(".")[0] not in sick]
+        problems += [p for p in structure_problems(error, data) if p.where not in known]
+    if study is None or problems:
+        return None, problems + _beside(data, folder, name, _sick(problems))
+    study, found = attach_rows(study)
+    return study, found + cross_checks(study, _sick(found))
 
 
-def _beyond_structure(data: dict[str, Any], folder: str, name: str, problems: list[Problem]) -> list[Problem]:
-    """Return what else is wrong in sections whose keys are all sound, so that one reading tells everything."""
-    sick = {p.where.split(".")[0].split("[")[0] for p in problems}
+def _beside(data: dict[str, Any], folder: str, name: str, sick: set[str]) -> list[Problem]:
+    """Return what is wrong in and between the sections that are not sick."""
     sound = {section: value for section, value in data.items() if section not in sick}
     try:
         study, found = attach_rows(Study.model_validate({**sound, "folder": folder, "name": name}))
     except ValidationError:
         return []
-    found += cross_checks(study, partial=True)
-    return [p for p in found if p.where.split(".")[0].split("[")[0] not in sick]
+    return found + cross_checks(study, sick | _sick(found))
 
 
-def _variant_problems(data: dict[str, Any], study: Study, folder: str, name: str) -> list[Problem]:
+def _sick(problems: list[Problem]) -> set[str]:
+    """Return the sections in which there are problems."""
+    return {re.split(r"[.\[,]", p.where)[0] for p in problems}
+
+
+def _variant_problems(study: Study) -> list[Problem]:
     problems, seen = [], set()
     for n, variant in enumerate(study.variants):
         where = f"variants[{n}]"
         if variant.name in seen:
             problems.append(Problem(f"{where}.name", "is used twice", variant.name, "a name of its own"))
         seen.add(variant.name)
-        made, found = set_values(data, variant.set)
+        made, found = set_values(study.content(), variant.set)
         if not found:
-            found = _attempt(made, folder, name)[1]
+            found = _attempt(made, study.folder, study.name)[1]
         problems += [Problem(f"{where} {variant.name!r}: {p.where}", p.what, p.got, p.allowed, p.suggestion) for p in found]
     return problems
-
-
-def _located(problem: Problem, name: str) -> Problem:
-    if problem.where.startswith(f"{name}: "):
-        return problem
-    return Problem(f"{name}: {problem.where}", problem.what, problem.got, problem.allowed, problem.suggestion)

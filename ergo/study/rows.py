@@ -1,15 +1,20 @@
 """CSV files that a study names, read into the study so that everything after it is free of files."""
 
 import csv
+import hashlib
+import io
 import itertools
 import math
 from pathlib import Path
 from typing import Any
 
-from ergo.errors import Problem
+from ergo.datasets import library
+from ergo.errors import Problem, StudyError
+from ergo.people.own_table import read_own_table
 from ergo.study.model import Study
 
 LARGEST_ROWS = 20_000
+LARGEST_BYTES = 5_000_000
 _COLUMNS = {
     "linkage": ("lever_deg", "slide_mm"),
     "load": ("slide_mm", "force_n"),
@@ -30,22 +35,26 @@ def attach_rows(study: Study) -> tuple[Study, list[Problem]]:
         rows, found = _read_rows(Path(study.folder) / file, f"{section}.file", columns, _RISING.get(section))
         problems += found
         update[section] = part.model_copy(update={"rows": rows})
+    if study.operators.population.endswith(".csv"):
+        checksum, found = _own_people(Path(study.folder) / study.operators.population)
+        problems += found
+        update["operators"] = study.operators.model_copy(update={"population_checksum": checksum})
     return study.model_copy(update=update), problems
 
 
 def _read_rows(path: Path, where: str, columns: tuple[str, ...], rising: str | None
                ) -> tuple[tuple[tuple[float, ...], ...], list[Problem]]:  # fmt: skip
     expected = ", ".join(columns)
+    text, fault = _text_of(path)
     try:
-        with path.open(encoding="utf-8-sig", newline="") as lines:
-            table = list(csv.reader(lines))
-    except FileNotFoundError:
-        return (), [Problem(where, "there is no such file", str(path.name), f"a CSV of {expected}")]
-    except (OSError, UnicodeDecodeError, csv.Error) as error:
-        return (), [Problem(where, f"cannot be read as a CSV file: {error}", path.name, f"a CSV of {expected}")]
+        table = list(csv.reader(io.StringIO(text, newline=""), strict=True))
+    except csv.Error as error:
+        table, fault = [], f"is not a CSV file: {error}"
+    if fault:
+        return (), [Problem(where, fault, path.name[:60], f"a CSV of {expected}")]
     table = [row for row in table if any(cell.strip() for cell in row)]
     if not table or tuple(cell.strip() for cell in table[0]) != columns:
-        got = ", ".join(table[0]) if table else "an empty file"
+        got = ", ".join(table[0])[:60] if table else "an empty file"
         return (), [Problem(where, "does not have the expected columns", got, expected)]
     if not 3 <= len(table) <= LARGEST_ROWS + 1:
         return (), [Problem(where, "has too few or too many rows", str(len(table) - 1), f"2 to {LARGEST_ROWS}")]
@@ -60,6 +69,38 @@ def _read_rows(path: Path, where: str, columns: tuple[str, ...], rising: str | N
     if not problems and rising is not None:
         problems += _order_problems(rows, where, rising)
     return tuple(rows), problems[:10]
+
+
+def _text_of(path: Path) -> tuple[str, str]:
+    """Return a file's text, and what keeps it from being read."""
+    try:
+        if path.exists() and not path.is_file():
+            return "", "is not a file"
+        content = path.read_bytes() if path.stat().st_size <= LARGEST_BYTES else None
+    except FileNotFoundError:
+        return "", "there is no such file"
+    except OSError as error:
+        return "", f"cannot be read: {(error.strerror or 'unknown fault').lower()}"
+    except ValueError:
+        return "", "is no name of a file"
+    if content is None:
+        return "", f"is too large for a table, over {LARGEST_BYTES / 1e6:g} MB"
+    try:
+        return content.decode("utf-8-sig"), ""
+    except UnicodeDecodeError as error:
+        return "", f"is not UTF-8 text (byte {error.start})"
+
+
+def _own_people(path: Path) -> tuple[str, list[Problem]]:
+    """Return the checksum of a population table of the user's own, and what is wrong with it."""
+    text, fault = _text_of(path)
+    if fault:
+        return "", [Problem("operators.population", fault, path.name[:60], "a CSV of sex, dimension, unit, mean, sd")]
+    try:
+        read_own_table(library(), path)
+    except StudyError as error:
+        return "", [Problem(f"operators.population, {p.where}", p.what, p.got, p.allowed, p.suggestion) for p in error.problems]
+    return hashlib.sha256(text.encode()).hexdigest(), []
 
 
 def _numbers(cells: list[str], count: int) -> tuple[float, ...] | None:
