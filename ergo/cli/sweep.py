@@ -88,6 +88,9 @@ def _judge(args: argparse.Namespace, study: "Study", placements: "Placements") -
         print(f"Stopped: {bar.kept} of {placements.count} placements are kept in {args.store};"  # noqa: T201
               " the same command with --resume goes on.", file=sys.stderr)  # fmt: skip
         return INTERRUPTED
+    finally:
+        if crew is not None:
+            crew.close()
     return EXIT_DONE
 
 

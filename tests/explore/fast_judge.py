@@ -1,5 +1,6 @@
 """A stand-in for the engine: microseconds a placement, every number follows from the study's values alone."""
 
+import os
 import time
 
 from ergo.evaluation.results import RATING_NAMES
@@ -22,3 +23,12 @@ def judge(study):
 def slow_judge(study):
     time.sleep(PAUSE_S)
     return judge(study)
+
+
+def recorded_judge(study):
+    """As `slow_judge`, and a line in the file that the environment names: who judged which placement."""
+    line = f"{os.getpid()} {study.lever.length_mm:g} {study.lever.start_deg:g}\n"
+    file = os.open(os.environ["PULLWARD_TEST_RECORD"], os.O_WRONLY | os.O_APPEND | os.O_CREAT)
+    os.write(file, line.encode())
+    os.close(file)
+    return slow_judge(study)
