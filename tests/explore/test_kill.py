@@ -20,6 +20,7 @@ def test_kill_at_fifty_random_moments_loses_doubles_and_changes_nothing(tmp_path
                           capture_output=True, text=True, check=False, timeout=240)  # fmt: skip
     assert done.returncode == 0, done.stderr
     counts = json.loads(done.stdout)
+    print(f"{counts['kills']} kills over {counts['sweeps']} sweeps: {counts['lost']} lost, {counts['changed']} changed")
     assert counts["kills"] == KILLS
     assert (counts["lost"], counts["changed"]) == (0, 0)
     # The moments are spread over the sweep, not all before the first row.
