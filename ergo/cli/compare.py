@@ -70,9 +70,13 @@ def show(found: "Comparison") -> None:
     best = found.best()
     for row in found.rows():
         numbers = "".join(f"{row[r]:5.0f}{'*' if best[r] == row['name'] else ' '}" for r in RATING_NAMES)
-        console.print(f"{row['name'][:29]:<30}{numbers}{row['largest_demand_n']:6.0f}")
-    console.print("ratings 0..100; * clearly best; N: largest hand force needed")
+        console.print(f"{row['name'][:29]:<30}{numbers}{_force(row['largest_demand_n']):>6}")
+    console.print("ratings 0..100; * best beyond the noise of the draw; N: largest hand force needed")
     console.print()
-    for sentence in found.sentences():
+    for sentence in (*found.sentences(), *found.notes):
         console.print(f"- {sentence}")
     console.print("- A screening calculation from population data; not a risk assessment.")
+
+
+def _force(newtons: float | None) -> str:
+    return "-" if newtons is None else f"{newtons:.0f}"

@@ -9,9 +9,11 @@ from numpy.typing import NDArray
 
 from ergo.evaluation.results import RATING_NAMES, Results
 from ergo.evaluation.run import evaluate
+from ergo.explore.outcome import outcome_of
 from ergo.study.model import Study
 
 Z = 1.959963984540054  # standard normal quantile of 0.975
+PEOPLE_KEYS = ("population", "count", "seed", "age_years", "women_share")
 
 
 @dataclass(frozen=True)
@@ -40,10 +42,11 @@ class Difference:
 
 @dataclass(frozen=True)
 class Comparison:
-    """Results by name, the first being what the others are held against."""
+    """Results by name, the first being what the others are held against; `notes` say whose people were replaced."""
 
     results: dict[str, Results]
     differences: tuple[Difference, ...]
+    notes: tuple[str, ...] = ()
 
     @property
     def base(self) -> str:
@@ -51,29 +54,33 @@ class Comparison:
         return next(iter(self.results))
 
     def best(self) -> dict[str, str]:
-        """Return the best name of each rating, empty where the best two lie inside each other's interval."""
+        """Return the best name of each rating, empty where noise could have made it the best.
+
+        The served share is compared person by person: its best must beat every other by an interval that leaves zero
+        out. The other ratings are compared by their own intervals, which is stricter than person by person.
+        """
         found = {}
         for rating in RATING_NAMES:
             rows = sorted(((r.ratings[rating], name) for name, r in self.results.items()), key=lambda row: -row[0].value)
-            first, second = rows[0], rows[1] if len(rows) > 1 else None
-            clear = second is None or (first[0].low > second[0].high and first[0].value > second[0].value)
-            found[rating] = first[1] if clear else ""
+            first, name = rows[0]
+            if rating == "served":
+                clear = all(self._beats(name, other) for _, other in rows[1:])
+            else:
+                clear = all(first.value > other.value and first.low > other.high for other, _ in rows[1:])
+            found[rating] = name if clear else ""
         return found
+
+    def _beats(self, name: str, other: str) -> bool:
+        served = self.results[name].crowd.served, self.results[other].crowd.served
+        return paired_interval(*served)[1] > 0.0
 
     def sentences(self) -> list[str]:
         """Return one sentence a difference."""
         return [d.sentence(self.base) for d in self.differences]
 
     def rows(self) -> list[dict[str, Any]]:
-        """Return one row a placement: verdict, ratings, hand force, hand travel."""
-        found = []
-        for name, result in self.results.items():
-            demand = result.stroke.demand_n
-            row: dict[str, Any] = {"name": name, "verdict": result.verdict}
-            row |= {rating: result.ratings[rating].value for rating in RATING_NAMES}
-            row["largest_demand_n"] = float(np.nanmax(np.where(np.isfinite(demand), demand, np.nan)))
-            found.append(row)
-        return found
+        """Return one row a placement: verdict, ratings with intervals, where it is worst and why, force, travel."""
+        return [{"name": name, **outcome_of(result)} for name, result in self.results.items()]
 
     def to_dict(self) -> dict[str, Any]:
         """Return the comparison as plain values."""
@@ -82,6 +89,7 @@ class Comparison:
             "placements": self.rows(),
             "differences": [{**vars(d), "clear": d.clear, "sentence": d.sentence(self.base)} for d in self.differences],
             "best": self.best(),
+            "notes": list(self.notes),
         }
 
 
@@ -111,29 +119,80 @@ def compare(chosen: dict[str, Study], *, judge: Callable[..., Results] = evaluat
     Returns
     -------
     Comparison
-        Difference of served share, paired person by person: mean of (other - first) with standard error
-        sqrt(var / n), normal interval.
+        Difference of served share, paired person by person, see `paired_interval`.
     """
     names = list(chosen)
-    first = chosen[names[0]]
-    shared = ("population", "count", "seed", "age_years", "women_share")
-    same = {f"operators.{key}": getattr(first.operators, key) for key in shared}
-    results = {}
+    first = chosen[names[0]].operators
+    same = {f"operators.{key}": getattr(first, key) for key in PEOPLE_KEYS}
+    results, notes = {}, []
     for n, name in enumerate(names):
         if tell is not None:
             tell(n / len(names), name)
         study = chosen[name]
-        results[name] = judge(study if study.operators == first.operators else study.with_values(same))
+        other = [key for key in PEOPLE_KEYS if getattr(study.operators, key) != getattr(first, key)]
+        if other:
+            study = study.with_values(same)
+            notes.append(f"{name} is judged on the people of {names[0]}: its own {', '.join(other)}"
+                         f" {'is' if len(other) == 1 else 'are'} set aside.")  # fmt: skip
+        results[name] = judge(study)
     served = {name: result.crowd.served for name, result in results.items()}
-    base = served[names[0]]
-    return Comparison(results, tuple(_difference(name, served[name], base) for name in names[1:]))
+    differences = tuple(paired_difference(name, served[name], served[names[0]]) for name in names[1:])
+    return Comparison(results, differences, tuple(notes))
 
 
-def _difference(name: str, other: NDArray[np.bool_], base: NDArray[np.bool_]) -> Difference:
-    step = other.astype(float) - base.astype(float)
-    half = Z * float(np.sqrt(step.var(ddof=1) / step.size))
-    mean = float(step.mean())
-    return Difference(name, 100.0 * mean, 100.0 * (mean - half), 100.0 * (mean + half))
+def paired_difference(name: str, other: NDArray[np.bool_], base: NDArray[np.bool_]) -> Difference:
+    """Return the difference of two served shares on the same people.
+
+    Parameters
+    ----------
+    name : str
+        Of the other.
+    other, base : array
+        (n,) whether person n is served.
+
+    Returns
+    -------
+    Difference
+        Mean of (other - base) [points] with its 95 % interval, see `paired_interval`.
+    """
+    mean, low, high = paired_interval(other, base)
+    return Difference(name, 100.0 * mean, 100.0 * low, 100.0 * high)
+
+
+def paired_interval(other: NDArray[np.bool_], base: NDArray[np.bool_]) -> tuple[float, float, float]:
+    """Return mean, low and high (95 %) of a difference of two shares on the same n people.
+
+    Notes
+    -----
+    With b of n served by the other alone and c by the base alone: mean d = (b - c) / n, and the score interval of
+    Tango for paired shares: all D with |b - c - n D| <= z sqrt(n (2 q + D (1 - D))), where q, the share served by the
+    base alone that goes best with D, is (sqrt(w^2 - 8 n v) - w) / (4 n), w = -b - c + (2 n - b + c) D,
+    v = -c D (1 - D). It holds its 95 % where few people differ, where mean and variance alone would say 0 to 0.
+    """
+    n = other.size
+    alone, base_alone = int(np.sum(other & ~base)), int(np.sum(base & ~other))
+    mean = (alone - base_alone) / n
+    low = _score_end(alone, base_alone, n, mean, -1.0)
+    return mean, low, _score_end(alone, base_alone, n, mean, 1.0)
+
+
+def _score_end(alone: int, base_alone: int, n: int, mean: float, end: float) -> float:
+    """Return the end (-1 or 1) of the score interval, by halving between the mean and that end."""
+    inside, outside = mean, end
+    for _ in range(60):
+        middle = 0.5 * (inside + outside)
+        if _within(alone, base_alone, n, middle):
+            inside = middle
+        else:
+            outside = middle
+    return inside
+
+
+def _within(b: int, c: int, n: int, d: float) -> bool:
+    w, v = -b - c + (2 * n - b + c) * d, -c * d * (1.0 - d)
+    q = (np.sqrt(max(w * w - 8.0 * n * v, 0.0)) - w) / (4.0 * n)
+    spread = n * (2.0 * q + d * (1.0 - d))
+    return abs(b - c - n * d) <= Z * np.sqrt(max(spread, 0.0))
 
 
 def named(studies: Iterable[tuple[str, Study]], *, with_variants: bool) -> dict[str, Study]:
