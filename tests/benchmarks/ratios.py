@@ -1,4 +1,7 @@
-"""Speed as ratios in one run: prints one JSON line. Run: python tests/benchmarks/ratios.py"""
+"""Speed as ratios in one run: prints one JSON line. Run: python tests/benchmarks/ratios.py [--full] [--all]
+
+`--full` goes on to 8000 operators; `--all` adds the ratios of a sweep (see `sweep_ratios.py`).
+"""
 
 import json
 import resource
@@ -21,6 +24,7 @@ from ergo.evaluation.plan import plan
 from ergo.strength.hand_capability import hand_capability
 from tests.arm import numpy_twin
 from tests.arm.made_operators import LIMITS, SHAPE, operators, scene, targets
+from tests.benchmarks.sweep_ratios import ratios as sweep_ratios
 
 
 @njit
@@ -107,6 +111,7 @@ def main():
     python, check = sys.executable, [sys.executable, "-m", "ergo", "check", "gasket_punch"]
     whole(check, 1)
     imports = whole([python, "-c", "import numpy, scipy, pandas, numba"])
+    sweeps = sweep_ratios() if "--all" in sys.argv else {}
     print(json.dumps({
         "kernel_vs_numpy": round(fast / plain, 1),
         "kernel_vs_generic": round(generic_seconds() / (times[0] / (counts[0] * 41)), 1),
@@ -117,7 +122,7 @@ def main():
         "ms_per_operator_41_positions": round(1e3 * times[0] / counts[0], 2),
         "cold_check_vs_imports": round(whole(check) / imports, 2),
         "help_vs_python": round(whole([python, "-m", "ergo", "--help"], 7) / whole([python, "-c", "pass"], 7), 2),
-    }))  # fmt: skip
+    } | sweeps))  # fmt: skip
 
 
 if __name__ == "__main__":
