@@ -514,6 +514,10 @@
       board.then = "/";                       // the page is built when the change has been confirmed
       board.set(button.dataset.path, Number(button.dataset.value), "rest");
     }
+    else if (button.dataset.edits) {
+      board.then = "/";
+      JSON.parse(button.dataset.edits).forEach((edit) => board.set(edit[0], edit[1], "rest"));
+    }
     else if (button.id.startsWith("{")) {
       const id = JSON.parse(button.id);
       if (id.type === "add" || id.type === "remove") board.send({ do: id.type, path: id.path }, "rest");

@@ -5,15 +5,18 @@ from typing import Any
 
 import numpy as np
 
-from ergo.board.controls import control_paths, inner_paths, label
+from ergo.board.controls import control_paths, inner_paths, label, window
 from ergo.board.draft import draft_of, problems_by_field, set_at, value_at
 from ergo.board.jobs import Job
 from ergo.board.judge import DRAGGED_COUNT, Judge, fewer_operators
 from ergo.board.store import Work
 from ergo.errors import PullwardError
 from ergo.evaluation.results import Results, rating_row
+from ergo.study.model import Study
 
 FEWEST_STEPS, MOST_STEPS = 2, 60
+MOST_FREE = 6  # keys that a suggestion may change at once
+SUGGESTION_TRIALS = 120
 
 
 def keys_to_vary(data: dict[str, Any]) -> dict[str, str]:
@@ -26,6 +29,15 @@ def keys_to_vary(data: dict[str, Any]) -> dict[str, str]:
             if isinstance(value_at(data, inner), (int, float)):
                 found[inner] = f"{row['section']}: {label(row)}{_part(inner)}"
     return found
+
+
+def free_of(data: dict[str, Any]) -> list[str]:
+    """Return the keys that a study sets free, or the lever's length where it sets none free."""
+    known = keys_to_vary(data)
+    targets = data.get("targets")
+    free = targets.get("free") if isinstance(targets, dict) else None
+    found = [path for path in free if path in known] if isinstance(free, dict) else []
+    return found[:MOST_FREE] or [path for path in ("lever.length_mm",) if path in known]
 
 
 def _part(path: str) -> str:
@@ -57,6 +69,32 @@ def sweep(job: Job, judge: Judge, work: Work, data: dict[str, Any], path: str, v
                 judged += 1
         job.rows.append(row)
     return judged
+
+
+def free_bounds(study: Study, paths: list[str]) -> dict[str, tuple[float, float]]:
+    """Return the bounds between which keys may change: those the study sets free, else the window of their slider."""
+    data, found = study.content(), {}
+    rows = control_paths(data)
+    for path in paths[:MOST_FREE]:
+        row = rows.get(path) or rows.get(path.rpartition("[")[0])
+        if path in study.targets.free:
+            found[path] = study.targets.free[path]
+        elif row is not None:
+            low, high, _ = window(row, value_at(data, path))
+            found[path] = (low, high)
+    return found
+
+
+def suggestion(job: Job, judge: Judge, study: Study, paths: list[str]) -> dict[str, Any]:
+    """Look for the smallest changes of some keys that meet every target; each proposal becomes a row when it is confirmed."""
+    from ergo.explore.suggest import suggest
+
+    few = fewer_operators(study, min(study.operators.count, DRAGGED_COUNT))
+    found = suggest(
+        few, free=free_bounds(study, paths), trials=SUGGESTION_TRIALS, judge=lambda s: judge.lend(s, job.tell_only),
+        tell=job.tell, show=lambda proposal: job.rows.append(proposal.to_dict()),
+    )  # fmt: skip
+    return found.to_dict()
 
 
 def row_of(results: Results) -> dict[str, Any]:

@@ -124,7 +124,8 @@ class _Search:
 
 def suggest(study: Study, *, free: Mapping[str, tuple[float, float]] | None = None, trials: int = TRIALS,
             judge: Judge = evaluate, look: Callable[[Study], Glance] | None = glance,
-            tell: Callable[[float, str], None] | None = None) -> Suggestion:  # fmt: skip
+            tell: Callable[[float, str], None] | None = None,
+            show: Callable[[Proposal], None] | None = None) -> Suggestion:  # fmt: skip
     """Look for the smallest changes of the free keys that meet every target.
 
     Parameters
@@ -142,7 +143,9 @@ def suggest(study: Study, *, free: Mapping[str, tuple[float, float]] | None = No
         Judges direction and tool travel alone, so that no people are asked about a push, or about a lever that moves
         the tool less than it does now.
     tell : callable, optional
-        Progress, share and word.
+        Progress, share and word; may raise to stop.
+    show : callable, optional
+        Called with each proposal as soon as it is confirmed.
 
     Returns
     -------
@@ -178,6 +181,8 @@ def suggest(study: Study, *, free: Mapping[str, tuple[float, float]] | None = No
     found: list[Proposal] = []
     while len(found) < PROPOSALS and (made := propose(search, found)) is not None:
         found.append(made)
+        if show is not None:
+            show(made)
         say(0.9, f"proposal {len(found)} confirmed on all people")
     found.sort(key=lambda p: p.cost)
     if found:

@@ -11,7 +11,7 @@ from ergo.board.guard import work_key
 from ergo.board.ids import Id
 from ergo.board.layouts import search
 from ergo.board.room import Room
-from ergo.board.searching import keys_to_vary, sweep, values_between
+from ergo.board.searching import keys_to_vary, suggestion, sweep, values_between
 
 
 def register(app: Dash, room: Room) -> None:
@@ -19,6 +19,8 @@ def register(app: Dash, room: Room) -> None:
     _ends(app, room)
     _start(app, room)
     _watch(app, room)
+    _suggest(app, room)
+    _watch_suggestion(app, room)
 
 
 def _ends(app: Dash, room: Room) -> None:
@@ -87,3 +89,53 @@ def _watch(app: Dash, room: Room) -> None:
             job.stop()
         done = job.done.is_set()
         return search.progress(job), search.table(job, started["path"], started["words"]), done, done
+
+
+def _suggest(app: Dash, room: Room) -> None:
+    """Start looking for the smallest changes."""
+
+    @app.callback(
+        Output(Id.SUGGEST_JOB, "data"),
+        Output(Id.SUGGEST_SAYS, "children", allow_duplicate=True),
+        Input(Id.SUGGEST, "n_clicks"),
+        State(Id.SUGGEST_KEYS, "value"),
+        prevent_initial_call=True,
+    )
+    def start(clicks: int, paths: Any) -> tuple[Any, Any]:
+        work = room.store.work(work_key())
+        if not clicks or work.draft is None:
+            raise PreventUpdate
+        study = work.draft.good
+        if study is None or not work.draft.sound:
+            return no_update, "Nothing was tried: this is not a study yet; its problems stand beside the fields."
+        known = keys_to_vary(work.draft.data)
+        chosen = [path for path in paths or [] if path in known]
+        if not chosen:
+            return no_update, "Nothing was tried: choose at least one value that may change."
+        job = room.jobs.start(work.key, "suggestion", lambda j: suggestion(j, room.judge, study, chosen))
+        return {"key": job.key, "words": {path: known[path] for path in chosen}}, ""
+
+
+def _watch_suggestion(app: Dash, room: Room) -> None:
+    """Show how far the suggestion is and what it has found, until it is done."""
+
+    @app.callback(
+        Output(Id.SUGGEST_SAYS, "children"),
+        Output(Id.SUGGEST_TABLE, "children"),
+        Output(Id.SUGGEST_TICK, "disabled"),
+        Output(Id.SUGGEST_STOP, "disabled"),
+        Input(Id.SUGGEST_JOB, "data"),
+        Input(Id.SUGGEST_TICK, "n_intervals"),
+        Input(Id.SUGGEST_STOP, "n_clicks"),
+        prevent_initial_call=True,
+    )
+    def watch(started: dict[str, Any] | None, _: int, __: int) -> tuple[Any, ...]:
+        if not started:
+            raise PreventUpdate
+        job = room.jobs.of(work_key(), started.get("key"))
+        if job is None:
+            return "This search is lost: the board was started anew. Start it again.", no_update, True, True
+        if ctx.triggered_id == Id.SUGGEST_STOP:
+            job.stop()
+        done = job.done.is_set()
+        return search.verdict(job), search.proposals(job, started["words"]), done, done

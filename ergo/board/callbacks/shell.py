@@ -10,7 +10,7 @@ from ergo.board.guard import work_key
 from ergo.board.ids import Id
 from ergo.board.opening import in_folder, open_file, shipped
 from ergo.board.room import Room
-from ergo.board.searching import keys_to_vary
+from ergo.board.searching import free_of, keys_to_vary
 from ergo.board.store import Work
 
 READ = {"/left-out": Id.LEFT_OUT_BODY, "/let-go": Id.LET_GO_BODY}
@@ -71,7 +71,7 @@ def page_of(path: str, work: Work, room: Room) -> Any:
     if path == "/placements":
         return layouts.placements.page(work)
     if path == "/search":
-        return layouts.search.page(keys_to_vary(work.draft.data), suggests=False)
+        return layouts.search.page(keys_to_vary(work.draft.data), free_of(work.draft.data))
     if path == "/sources":
         return layouts.sources.page()
     if path in READ:
