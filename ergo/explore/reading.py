@@ -5,7 +5,7 @@ import io
 import sqlite3
 from collections.abc import Iterator
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from ergo.errors import DataError
 from ergo.explore.outcome import COLUMNS
@@ -13,6 +13,8 @@ from ergo.explore.store import Head, check_kind, check_rows, columns, in_words, 
 
 if TYPE_CHECKING:
     import pandas as pd
+
+ROWS_AT_ONCE = 10_000
 
 
 @contextlib.contextmanager
@@ -67,13 +69,21 @@ def read_store(path: Path) -> "tuple[Head, pd.DataFrame]":
         head = read_head(connection, path)
         check_rows(connection, path, head.paths)
         with in_words(path, None):
-            cells = connection.execute("SELECT * FROM placements ORDER BY placement").fetchall()
-    frame = pd.DataFrame(cells, columns=columns(head.paths)).drop(columns=["mark"])
+            found = connection.execute("SELECT * FROM placements ORDER BY placement")
+            # Cells of Python take ten times the room of a frame's: only some rows at once are such cells.
+            pieces = [_frame(cells, head.paths) for cells in iter(lambda: found.fetchmany(ROWS_AT_ONCE), [])]
+    return head, pd.concat(pieces, ignore_index=True) if pieces else _frame([], head.paths)
+
+
+def _frame(cells: list[tuple[Any, ...]], paths: tuple[str, ...]) -> "pd.DataFrame":
+    import pandas as pd
+
+    frame = pd.DataFrame(cells, columns=columns(paths)).drop(columns=["mark"])
     numeric = [name for name, kind in COLUMNS.items() if kind == "REAL"]
-    words = [name for name, kind in COLUMNS.items() if kind == "TEXT"]
+    words = [name for name, kind in COLUMNS.items() if kind == "TEXT"] + ["rests_on"]
     frame[numeric] = frame[numeric].astype("float64")
     frame[words] = frame[words].astype("string")
-    return head, frame
+    return frame
 
 
 def table_bytes(frame: "pd.DataFrame", kind: str) -> bytes:
