@@ -106,7 +106,8 @@ def _frame(sheet: Sheet, box: tuple[float, ...], across: tuple, up: tuple, name:
     for value in np.arange(across[0], across[1] + 1.0, across[2]):
         x = box[0] + (box[2] - box[0]) * (value - across[0]) / (across[1] - across[0])
         sheet.line([[x, box[3]], [x, box[3] + 4.0]])
-        if (value / across[2]) % 2 == 0:
+        # Beside each other the left frame's last figure would meet the right one's first.
+        if (value / across[2]) % 2 == 0 and (name != "women" or value < across[1]):
             sheet.words([x, box[3] + 15.0], figure(value), anchor="middle", size=theme.SMALL)
     for value in np.arange(up[0], up[1] + 1e-9, up[2]):
         y = box[3] - (box[3] - box[1]) * (value - up[0]) / (up[1] - up[0])
@@ -116,7 +117,7 @@ def _frame(sheet: Sheet, box: tuple[float, ...], across: tuple, up: tuple, name:
     sheet.words([(box[0] + box[2]) / 2.0, box[3] + 31.0], "stature, mm", anchor="middle", size=theme.SMALL)
     sheet.words([box[2], box[1] - 8.0], name, anchor="end", weight=600)
     if name == "women":
-        sheet.words([box[0] - 30.0, box[1] - 8.0], "strength, % of the middle operator", size=theme.SMALL)
+        sheet.words([box[0] - 30.0, box[1] - 20.0], "strength, % of the middle operator", size=theme.SMALL)
     sheet.close()
 
 
