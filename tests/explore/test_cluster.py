@@ -94,7 +94,8 @@ def cluster(tmp_path):
         yield made
 
 
-def pullward(folder, *words, seconds=240):
+# Long enough for kernels that are compiled for the first time.
+def pullward(folder, *words, seconds=600):
     return subprocess.run([sys.executable, "-m", "ergo", *words], env=environment(folder), cwd=folder, check=False,
                           capture_output=True, text=True, timeout=seconds)  # fmt: skip
 

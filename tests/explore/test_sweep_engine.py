@@ -32,7 +32,7 @@ def started(folder, name, *words):
 
 def finished(running, code=0):
     with running:
-        said = running.communicate(timeout=240)
+        said = running.communicate(timeout=600)
     assert running.returncode == code, said[1]
     return said
 
@@ -59,7 +59,7 @@ def test_rows_are_the_same_bytes_whoever_judges(tmp_path, alone, workers):
 def test_a_stopped_run_goes_on_with_other_workers_to_the_same_rows(tmp_path, alone, how):
     path = tmp_path / "stopped.db"
     with started(tmp_path, path.name, "--workers", "1") as running:
-        until = time.monotonic() + 120.0
+        until = time.monotonic() + 600.0
         while not (path.exists() and path.stat().st_size and len(rows(path)) >= 2):
             assert time.monotonic() < until
             time.sleep(0.02)
