@@ -117,4 +117,6 @@ def test_nothing_chosen_is_said(board, new_page):
     at_search(page, board)
     page.evaluate("window.dash_clientside.set_props('suggest-keys', {value: []})")
     page.locator("#suggest").click()
-    page.locator("#suggest-says", has_text="choose at least one value").wait_for()
+    page.locator("#suggest-says", has_text="Nothing was tried").wait_for()
+    assert "choose at least one value that may change" in page.locator("#suggest-says").inner_text()
+    assert page.locator("#suggest-table").inner_text() == ""

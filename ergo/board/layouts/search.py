@@ -37,7 +37,12 @@ def page(keys: dict[str, str], free: list[str]) -> html.Div:
         html.Div(id=Id.SWEEP_SAYS, role="status"),
         html.Div(id=Id.SWEEP_TABLE),
     ]  # fmt: skip
-    parts += [
+    return html.Div([*parts, *_smallest(choices, free)], className="page")
+
+
+def _smallest(choices: list[dict[str, str]], free: list[str]) -> list[Any]:
+    """Return the part that asks for the smallest changes."""
+    return [
         html.H3("Smallest changes that meet every target"),
         html.Div(
             [
@@ -55,7 +60,6 @@ def page(keys: dict[str, str], free: list[str]) -> html.Div:
         dcc.Store(id=Id.JOB), dcc.Interval(id=Id.JOB_TICK, interval=250, disabled=True),
         dcc.Store(id=Id.SUGGEST_JOB), dcc.Interval(id=Id.SUGGEST_TICK, interval=400, disabled=True),
     ]  # fmt: skip
-    return html.Div(parts, className="page")
 
 
 def progress(job: Job) -> list[Any]:
