@@ -61,7 +61,11 @@ class FreeKeys:
 
     def cost(self, values: Mapping[str, float]) -> float:
         """Return what a change costs: the sum of all changes, each as a share of its span."""
-        return sum(abs(values[key.path] - key.now) / key.span for key in self.keys)
+        return sum(self.shares(values).values())
+
+    def shares(self, values: Mapping[str, float]) -> dict[str, float]:
+        """Return each key's change as a share of its span, by path."""
+        return {key.path: abs(values[key.path] - key.now) / key.span for key in self.keys}
 
 
 def free_keys(study: Study, more: Mapping[str, tuple[float, float]] | None = None) -> FreeKeys:

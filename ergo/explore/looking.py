@@ -40,7 +40,6 @@ class Apart:
             return trial.cost
         return NOT_MEETING + trial.shortfall + close + 0.02 * trial.cost
 
-
     def starts(self, trials: list[Trial], count: int) -> list[Trial]:
         """Return trials to begin from: the cheapest, and those with the most room over their tightest target.
 

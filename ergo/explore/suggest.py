@@ -38,7 +38,8 @@ class Proposal:
 
     cost : sum of the changes, each as a share of its key's span. `before`, `after` : what the placements store holds
     of each (ratings, force, travel). served : paired difference of the served share [points]. margin : of the person
-    who must still be served, over the smallest margin asked.
+    who must still be served, over the smallest margin asked. targets : of each rating, None where it has none.
+    shares : each key's part of the cost.
     """
 
     values: Mapping[str, float]
@@ -50,6 +51,8 @@ class Proposal:
     after: Mapping[str, Any]
     served: Difference
     margin: float
+    targets: Mapping[str, float | None]
+    shares: Mapping[str, float]
 
     @property
     def changed(self) -> list[str]:
@@ -58,10 +61,12 @@ class Proposal:
 
     def to_dict(self) -> dict[str, Any]:
         """Return the proposal as plain values."""
-        changes = [{"key": p, "from": self.now[p], "to": self.values[p], "unit": self.units[p]} for p in self.changed]
+        changes = [{"key": p, "from": self.now[p], "to": self.values[p], "unit": self.units[p],
+                    "cost": self.shares[p]} for p in self.changed]  # fmt: skip
         served = {**vars(self.served), "clear": self.served.clear}
         return {"changes": changes, "cost": self.cost, "meets": self.meets, "margin": self.margin,
-                "before": dict(self.before), "after": dict(self.after), "served_difference": served}  # fmt: skip
+                "before": dict(self.before), "after": dict(self.after),
+                "targets": dict(self.targets), "served_difference": served}  # fmt: skip
 
 
 @dataclass(frozen=True)
@@ -103,6 +108,7 @@ class _Search:
 
     def confirmed(self, values: Mapping[str, float]) -> Proposal | None:
         """Return the proposal judged on all people, None when it is no sound study there."""
+        self.tell(0.0, "judging a change on all people")
         try:
             study = placed(self.study, values)
             results = self.judge(study)
@@ -119,6 +125,8 @@ class _Search:
             after=outcome_of(results),
             served=paired_difference("the proposal", results.crowd.served, self.base.crowd.served),
             margin=last_margin(self.study, results),
+            targets={name: r.target if np.isfinite(r.target) else None for name, r in results.ratings.items()},
+            shares=self.keys.shares(values),
         )
 
 
@@ -159,7 +167,7 @@ def suggest(study: Study, *, free: Mapping[str, tuple[float, float]] | None = No
     that meets the targets; a proposal that meets them on few people only is searched again with targets lifted by the gap.
     """
     keys = free_keys(study, free)
-    say = tell or (lambda share, what: None)
+    say = _forward(tell)
     say(0.0, "judging the study as it stands")
     base = judge(study)
     travel = look(study).travel if look is not None else 0.0
@@ -188,6 +196,19 @@ def suggest(study: Study, *, free: Mapping[str, tuple[float, float]] | None = No
     if found:
         return Suggestion(False, tuple(found), None, (), False, len(wide.known) + len(near.known))
     return _no(search)
+
+
+def _forward(tell: Callable[[float, str], None] | None) -> Callable[[float, str], None]:
+    """Return a teller whose share never goes back: a search near one proposal begins where the last had got to."""
+    reached = 0.0
+
+    def say(share: float, what: str) -> None:
+        nonlocal reached
+        reached = max(reached, share)
+        if tell is not None:
+            tell(reached, what)
+
+    return say
 
 
 def propose(search: _Search, others: Sequence[Proposal]) -> Proposal | None:
