@@ -6,7 +6,7 @@ kernel calls stays in this file: numba's cache follows one file's content only.
 """
 
 import numpy as np
-from numba import njit
+from numba import njit, prange
 
 # With rate x step at most 1 the first dropped term is below 1 / 17!.
 ORDER = 17
@@ -17,6 +17,7 @@ OVERRUN, PEAK_SPEED, TIME, SPEED, PRESS, HOW = range(6)
 ANSWERS = 6
 
 bare = njit(cache=True, error_model="numpy")
+bare_parallel = njit(cache=True, error_model="numpy", parallel=True)
 
 
 @bare
@@ -123,15 +124,15 @@ def one_case(force, against, against_rate, mass, damping, stiffness, latency, de
     answer[OVERRUN], answer[TIME], answer[SPEED], answer[HOW] = x, watched, v, STILL_MOVING
 
 
-@bare
+@bare_parallel
 def all_cases(force, against, against_rate, arm_mass, fixed_mass, ahead, muscle, answers):
     """Fill answers (n, P, S, ANSWERS) from arrays (n, P) and the muscle's scenarios (7, S).
 
     Rows of `muscle`: latency, decay rate, stiffness per force, damping time, relaxed stiffness, factor on the
     arm's mass, watched time.
     """
-    work = np.empty((3, ORDER))
-    for i in range(force.shape[0]):
+    for i in prange(force.shape[0]):
+        work = np.empty((3, ORDER))
         for j in range(force.shape[1]):
             for s in range(muscle.shape[1]):
                 stiffness = muscle[2, s] * max(force[i, j], 0.0) + muscle[4, s]
