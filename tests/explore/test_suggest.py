@@ -95,6 +95,19 @@ def test_it_can_be_stopped_from_its_progress(pattern):
         suggest(STUDY, free=FREE, trials=60, judge=judge_of(pattern, longer_is_easier), look=None, tell=stop)
 
 
+def test_progress_never_goes_back_and_each_key_says_its_part_of_the_cost(pattern):
+    shares = []
+    study = STUDY.with_values({"targets.margin_min": 1.0})
+    found = suggest(study, free=FREE, trials=60, judge=judge_of(pattern, longer_is_easier), look=None,
+                    tell=lambda share, what: shares.append(share))  # fmt: skip
+    assert shares == sorted(shares)
+    assert shares[0] == 0.0
+    assert shares[-1] <= 1.0
+    for row in found.proposals[0].to_dict()["changes"]:
+        low, high = FREE[row["key"]]
+        assert row["cost"] == pytest.approx(abs(row["to"] - row["from"]) / (high - low))
+
+
 @pytest.mark.parametrize(("step", "expected"), [(2.4, 2.0), (0.7, 0.5), (10.0, 10.0), (1.0, 1.0), (0.049, 0.02)])
 def test_steps_are_those_of_drawings(step, expected):
     assert round_step(step) == pytest.approx(expected)
