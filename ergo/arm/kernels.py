@@ -37,7 +37,6 @@ bare = njit(cache=True, error_model="numpy", fastmath=True)
 bare_parallel = njit(cache=True, error_model="numpy", fastmath=True, parallel=True)
 
 GRAVITY = 9.80665
-NOT_REACHED = -1.0e3
 NO_LIMIT = 1.0e9
 DEGREES = 180.0 / math.pi
 # The elbow hangs down, a little back and outward: the swivel counts from there (see DEVELOPERS.md, frames).

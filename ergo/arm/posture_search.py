@@ -29,7 +29,6 @@ from ergo.arm.posture_limits import (
 BENDS, SHARES, SWIVELS = 4, 3, 6  # of a full look
 HARD_BENDS, HARD_SHARES = 5, 4
 AS_GOOD = 0.97  # a position that came out this much worse than its neighbour is tried again
-FEW_BENDS, FEW_SHARES, FEW_SWIVELS = 3, 2, 5
 ROOMY = 0.05  # a bound nearer than this [m, or as a cosine or sine] speaks against a posture in the coarse look
 SECOND_WORTH = 1.7  # a second start is followed if its load is up to this much larger than the first's
 STRIDE = 5  # positions from one full look to the next
@@ -57,12 +56,12 @@ def badness(row, weight, need):
 
 
 @bare
-def look(person, stand_x, stand_y, target, weight, need, bends, shares, swivels, starts, row):
+def look(person, stand_x, stand_y, target, weight, need, bends, shares, starts, row):
     """Coarse look at all postures: the best of each bend into `starts` (bends, 4): share, bend, swivel, badness."""
     op, shape, scene, limits = person
     ball = scene[k.BALL] > 0.0
     shares = 1 if scene[k.SEATED] > 0.0 else (2 * shares if scene[k.COM_SLACK] > 0.0 else shares)
-    width = (scene[k.SWIVEL_HIGH] - scene[k.SWIVEL_LOW]) / swivels
+    width = (scene[k.SWIVEL_HIGH] - scene[k.SWIVEL_LOW]) / SWIVELS
     for i in range(bends):
         start = starts[i]
         start[3] = NEVER
@@ -71,7 +70,7 @@ def look(person, stand_x, stand_y, target, weight, need, bends, shares, swivels,
             share = (j + 0.5) / shares
             place, body, ease = body_limits(op, scene, limits, stand_x, stand_y, target, share, bend, row)
             formed = arm_is_formed(row)
-            for s in range(swivels if formed else 1):
+            for s in range(SWIVELS if formed else 1):
                 swivel = scene[k.SWIVEL_LOW] + (s + 0.5) * width
                 if formed:
                     row[EASE] = ease + arm_limits(
@@ -110,7 +109,6 @@ def settle(person, path, need, ends, at, size, steps, enough, seen, work):
         better = force >= need and work[0][0, LOW] <= need and ease < seen[5]
     if better:
         seen[0], seen[1], seen[2], seen[3], seen[4], seen[5] = at[2], at[3], at[4], force, code, ease
-    return better
 
 
 @bare
@@ -118,7 +116,7 @@ def look_everywhere(person, stand_x, stand_y, path, weight, need, ends, seen, wo
     """Best posture at one position (`path` (1, 9)) into `seen`, from a coarse look and its two best bends."""
     starts, at = np.zeros((BENDS, 4)), np.zeros(5)
     at[0], at[1] = stand_x, stand_y
-    look(person, stand_x, stand_y, path[0], weight, need, BENDS, SHARES, SWIVELS, starts, work[8])
+    look(person, stand_x, stand_y, path[0], weight, need, BENDS, SHARES, starts, work[8])
     order = np.argsort(starts[:, 3])
     for n in range(2):
         start = starts[order[n]]
@@ -138,7 +136,7 @@ def look_hard(person, stand_x, stand_y, path, weight, need, ends, seen, work):
         scene = person[2].copy()
         scene[k.SWIVEL_LOW if side == 0 else k.SWIVEL_HIGH] = middle
         half = (person[0], person[1], scene, person[3])
-        look(half, stand_x, stand_y, path[0], weight, need, HARD_BENDS, HARD_SHARES, SWIVELS, starts, work[8])
+        look(half, stand_x, stand_y, path[0], weight, need, HARD_BENDS, HARD_SHARES, starts, work[8])
         for n in range(HARD_BENDS):
             at[2:] = starts[n, 0:3]
             settle(person, path, need, ends, at, 0.4, ALL_STEPS[0], FINE, seen, work)

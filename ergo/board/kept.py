@@ -7,7 +7,7 @@ import numpy as np
 
 from ergo.board.store import MOST_KEPT, Kept, Work, new_key
 from ergo.evaluation.results import RATING_NAMES, Results, rating_row
-from ergo.explore.compare import Difference, Z
+from ergo.explore.compare import Difference, paired_difference
 
 LONGEST_NOTE = 400
 LONGEST_VALUE = 40
@@ -40,7 +40,7 @@ def summary_of(results: Results) -> dict[str, Any]:
     }
 
 
-def paired_difference(first: dict[str, Any], second: dict[str, Any], name: str = "") -> Difference | None:
+def difference_of(first: dict[str, Any], second: dict[str, Any], name: str = "") -> Difference | None:
     """Return by how much the second serves more of the same people, with its 95 % interval.
 
     Parameters
@@ -53,17 +53,10 @@ def paired_difference(first: dict[str, Any], second: dict[str, Any], name: str =
     Returns
     -------
     Difference [points], or None when the two were not judged on the same people.
-
-    Notes
-    -----
-    Mean of the paired differences d in {-1, 0, 1}; standard error sqrt(var(d) / n), as `pullward compare` has it.
     """
     if first["people"] != second["people"] or first["count"] != second["count"]:
         return None
-    d = 100.0 * (served_of(second).astype(float) - served_of(first).astype(float))
-    half = Z * float(np.sqrt(d.var(ddof=1) / d.size))
-    mean = float(d.mean())
-    return Difference(name, mean, mean - half, mean + half)
+    return paired_difference(name, served_of(second), served_of(first))
 
 
 def served_of(summary: dict[str, Any]) -> np.ndarray:

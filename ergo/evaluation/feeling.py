@@ -32,11 +32,12 @@ def feel_row(made: Plan, touch: Touch) -> Felt:
     if not known.any():
         return Felt(newtons, "The hand has no cue of the tool force in this range.", reason)
     at = int(np.nanargmax(np.where(known, drive.load_n, np.nan)))
+    # Whole numbers: a part that rounds to nothing has no sign.
+    rubbed, hung = (round(100.0 * part[at] / demand[at]) for part in (drive.friction_n, drive.weight_n))
     unit = "N m" if made.study.linkage.kind == "shaft" else "N"
     sentence = (f"At {100 * drive.stroke[at]:.0f} % of the stroke, of {drive.load_n[at]:.0f} {unit} at the tool the hand notices"
                 f" a change of {newtons[at]:.0f} {unit} ({100 * felt.smallest_share[at]:.0f} %); friction takes"
-                f" {100 * drive.friction_n[at] / demand[at]:.0f} % of the hand force, lever weight and spring"
-                f" {100 * drive.weight_n[at] / demand[at]:.0f} %.")  # fmt: skip
+                f" {rubbed} % of the hand force, lever weight and spring {hung} %.")  # fmt: skip
     return Felt(newtons, sentence, reason)
 
 

@@ -35,6 +35,7 @@ from ergo.study.model import Study
 
 Array = NDArray[np.float64]
 Tell = Callable[[float, str], None]
+SIDEWAYS = 0.5  # part of the work direction from which the sideways base of the stance matters
 
 
 def _silent(share: float, what: str) -> None:
@@ -155,4 +156,10 @@ def _work_sentences(made: Plan) -> list[str]:
         found.append(f"Repetition is not covered: {r.reason}.")
     if made.grip_note:
         found.append(f"Grip: {made.grip_note}.")
+    drive = made.machine.drive
+    sideways = (np.abs(drive.work_dir[:, 0]) > SIDEWAYS) & (drive.demand_n > 0.0)
+    if sideways.any() and not made.place.support.seated:
+        apart = made.library.values("stance_parameters")["feet_distance_mm"]
+        found.append(f"Part of the stroke goes sideways: the feet are taken {apart:.0f} mm apart; a wider stance, which tips"
+                     " later, is not modelled.")  # fmt: skip
     return found

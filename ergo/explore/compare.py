@@ -10,9 +10,9 @@ from numpy.typing import NDArray
 from ergo.evaluation.results import RATING_NAMES, Results
 from ergo.evaluation.run import evaluate
 from ergo.explore.outcome import outcome_of
+from ergo.rating.intervals import paired_interval
 from ergo.study.model import Study
 
-Z = 1.959963984540054  # standard normal quantile of 0.975
 PEOPLE_KEYS = ("population", "count", "seed", "age_years", "women_share")
 
 
@@ -119,7 +119,7 @@ def compare(chosen: dict[str, Study], *, judge: Callable[..., Results] = evaluat
     Returns
     -------
     Comparison
-        Difference of served share, paired person by person, see `paired_interval`.
+        Difference of served share, paired person by person, see `ergo.rating.intervals.paired_interval`.
     """
     names = list(chosen)
     first = chosen[names[0]].operators
@@ -153,46 +153,10 @@ def paired_difference(name: str, other: NDArray[np.bool_], base: NDArray[np.bool
     Returns
     -------
     Difference
-        Mean of (other - base) [points] with its 95 % interval, see `paired_interval`.
+        Mean of (other - base) [points] with its 95 % interval, see `ergo.rating.intervals.paired_interval`.
     """
     mean, low, high = paired_interval(other, base)
     return Difference(name, 100.0 * mean, 100.0 * low, 100.0 * high)
-
-
-def paired_interval(other: NDArray[np.bool_], base: NDArray[np.bool_]) -> tuple[float, float, float]:
-    """Return mean, low and high (95 %) of a difference of two shares on the same n people.
-
-    Notes
-    -----
-    With b of n served by the other alone and c by the base alone: mean d = (b - c) / n, and the score interval of
-    Tango for paired shares: all D with |b - c - n D| <= z sqrt(n (2 q + D (1 - D))), where q, the share served by the
-    base alone that goes best with D, is (sqrt(w^2 - 8 n v) - w) / (4 n), w = -b - c + (2 n - b + c) D,
-    v = -c D (1 - D). It holds its 95 % where few people differ, where mean and variance alone would say 0 to 0.
-    """
-    n = other.size
-    alone, base_alone = int(np.sum(other & ~base)), int(np.sum(base & ~other))
-    mean = (alone - base_alone) / n
-    low = _score_end(alone, base_alone, n, mean, -1.0)
-    return mean, low, _score_end(alone, base_alone, n, mean, 1.0)
-
-
-def _score_end(alone: int, base_alone: int, n: int, mean: float, end: float) -> float:
-    """Return the end (-1 or 1) of the score interval, by halving between the mean and that end."""
-    inside, outside = mean, end
-    for _ in range(60):
-        middle = 0.5 * (inside + outside)
-        if _within(alone, base_alone, n, middle):
-            inside = middle
-        else:
-            outside = middle
-    return inside
-
-
-def _within(b: int, c: int, n: int, d: float) -> bool:
-    w, v = -b - c + (2 * n - b + c) * d, -c * d * (1.0 - d)
-    q = (np.sqrt(max(w * w - 8.0 * n * v, 0.0)) - w) / (4.0 * n)
-    spread = n * (2.0 * q + d * (1.0 - d))
-    return abs(b - c - n * d) <= Z * np.sqrt(max(spread, 0.0))
 
 
 def named(studies: Iterable[tuple[str, Study]], *, with_variants: bool) -> dict[str, Study]:

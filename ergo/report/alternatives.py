@@ -5,11 +5,10 @@ from collections.abc import Sequence
 import numpy as np
 
 from ergo.evaluation.results import RATING_NAMES, Results
+from ergo.explore.compare import Difference, paired_difference
 from ergo.pictures.ratings_view import label
 from ergo.pictures.sheet import figure, plain
 from ergo.report.blocks import Rows, Words
-
-NORMAL_95 = 1.959964
 
 
 def name_of(results: Results) -> str:
@@ -17,18 +16,12 @@ def name_of(results: Results) -> str:
     return plain(results.variant or results.study["study"]["title"], 60)
 
 
-def paired_served(first: Results, second: Results) -> tuple[float, float, float] | None:
-    """Return the difference of served shares (second less first) with its 95 % interval, on the same people.
-
-    None when the two were not drawn alike. Equation: mean of the paired differences d in {-1, 0, 1}, standard
-    error sqrt(var(d) / n).
-    """
-    a, b = np.asarray(first.crowd.served, dtype=float), np.asarray(second.crowd.served, dtype=float)
-    if a.shape != b.shape or not np.array_equal(first.crowd.stature_mm, second.crowd.stature_mm):
+def paired_served(first: Results, second: Results) -> Difference | None:
+    """Return by how much the second serves more of the same people; None when the two were not drawn alike."""
+    alike = first.crowd.stature_mm.shape == second.crowd.stature_mm.shape
+    if not alike or not np.array_equal(first.crowd.stature_mm, second.crowd.stature_mm):
         return None
-    d = b - a
-    half = NORMAL_95 * float(np.std(d)) / np.sqrt(d.size)
-    return float(d.mean()), float(d.mean()) - half, float(d.mean()) + half
+    return paired_difference(name_of(second), np.asarray(second.crowd.served), np.asarray(first.crowd.served))
 
 
 def changes_between(first: Results, second: Results) -> str:
@@ -88,6 +81,7 @@ def sentence(results: Results, other: Results) -> str:
     difference = paired_served(results, other)
     if difference is None:
         return head + " The two were not judged on the same people, so no paired difference is given."
-    mean, low, high = (100.0 * v for v in difference)
-    gained = f"On the same people it serves {figure(abs(mean), 1)} % {'more' if mean >= 0 else 'fewer'} of them"
-    return f"{head} {gained} (95 % interval {figure(low, 1)} to {figure(high, 1)} %)."
+    side = "more" if difference.points >= 0 else "fewer"
+    span = f"95 % interval of the difference {figure(difference.low, 1)} to {figure(difference.high, 1)}"
+    chance = "" if difference.clear else "; no difference beyond chance"
+    return f"{head} On the same people it serves {figure(abs(difference.points), 1)} points {side} ({span}{chance})."

@@ -6,7 +6,8 @@ from pathlib import Path
 import numpy as np
 import pytest
 
-from ergo.board.kept import changes, paired_difference, served_of
+from ergo.board.kept import changes, difference_of, served_of
+from tests.rating.paired_score import Z, score_interval
 
 spec = importlib.util.spec_from_file_location("steps", Path(__file__).with_name("steps.py"))
 steps = importlib.util.module_from_spec(spec)
@@ -23,18 +24,24 @@ def test_served_flags_come_back_as_they_went():
     assert np.array_equal(served_of(summary(flags)), flags)
 
 
-def test_paired_difference_by_hand():
-    # Of ten people two are won and one is lost: d sums to 1, its squares to 3; variance (3 - 10 x 0.1^2) / 9.
+def test_paired_difference_is_that_of_compare():
+    # Of ten people two are won and one is lost.
     first = summary([1, 1, 1, 1, 0, 0, 0, 1, 1, 1])
     second = summary([1, 1, 1, 0, 1, 1, 0, 1, 1, 1])
-    found = paired_difference(first, second)
-    half = 100.0 * 1.959964 * (2.9 / 9.0 / 10.0) ** 0.5
-    assert (found.points, found.low, found.high) == pytest.approx((10.0, 10.0 - half, 10.0 + half))
+    found, span = difference_of(first, second), score_interval(2, 1, 10)
+    assert (found.points, found.low, found.high) == pytest.approx((10.0, 100 * span[0], 100 * span[1]), abs=1e-6)
     assert not found.clear
 
 
+def test_where_nobody_differs_a_difference_is_still_possible():
+    same = summary([1] * 100)
+    found = difference_of(same, same)
+    assert found.points == 0.0
+    assert found.low == pytest.approx(-100 * Z**2 / (100 + Z**2), abs=1e-6)
+
+
 def test_no_paired_difference_between_other_people():
-    assert paired_difference(summary([1, 0]), summary([1, 0], people="b")) is None
+    assert difference_of(summary([1, 0]), summary([1, 0], people="b")) is None
 
 
 def test_changes_name_the_keys_that_differ():

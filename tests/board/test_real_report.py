@@ -1,6 +1,5 @@
 """The report asked for on the board, made for real and opened with pypdf."""
 
-import importlib.util
 import io
 from pathlib import Path
 
@@ -9,16 +8,9 @@ import pytest
 
 from ergo.evaluation.run import evaluate
 from ergo.report.bundle import single
+from tests.board import conftest as made
+from tests.board import test_real_engine as real
 
-
-def beside(name):
-    spec = importlib.util.spec_from_file_location(f"report_{name}", Path(__file__).with_name(f"{name}.py"))
-    module = importlib.util.module_from_spec(spec)
-    spec.loader.exec_module(module)
-    return module
-
-
-made, real = beside("conftest"), beside("test_real_engine")
 small_study = real.small_study
 
 

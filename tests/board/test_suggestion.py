@@ -1,9 +1,7 @@
 """Suggestions from the board: proposals as they are confirmed, stopping, an honest no, and putting one into the fields."""
 
 import dataclasses
-import importlib.util
 import time
-from pathlib import Path
 
 import numpy as np
 import pytest
@@ -11,16 +9,9 @@ import pytest
 from ergo.board.searching import free_bounds, free_of
 from ergo.sources import folder
 from ergo.study.reader import read
+from tests.board import conftest as made
+from tests.board import steps
 
-
-def beside(name):
-    spec = importlib.util.spec_from_file_location(f"board_{name}", Path(__file__).with_name(f"{name}.py"))
-    module = importlib.util.module_from_spec(spec)
-    spec.loader.exec_module(module)
-    return module
-
-
-steps, made = beside("steps"), beside("conftest")
 STUDIES = folder("datasets") / "studies"
 
 

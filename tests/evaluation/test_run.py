@@ -14,7 +14,7 @@ from ergo.errors import NothingMovesError
 from ergo.evaluation import plan
 from ergo.evaluation.results import CAPABILITY_NAMES, RATING_NAMES
 from ergo.evaluation.run import evaluate
-from ergo.study.reader import build, read
+from ergo.study.reader import build, read, read_text
 
 FEW = {"operators.count": 60, "study.positions": 9}
 SHIPPED = shipped_studies()
@@ -305,3 +305,30 @@ def test_a_slippery_floor_costs_standing_people_force():
     level, up = np.hypot(s.work_dir[:, 0], s.work_dir[:, 1]), s.work_dir[:, 2]
     assert (s.capability_n["men_p99"] <= 0.05 * heaviest_n / (level - 0.05 * up) + 1e-6).all()
     assert s.governing[0]["slipping"] > 0.9
+
+
+VALVE = """
+[operators]
+count = 60
+[lever]
+pivot_mm = [-120, 300, 1150]
+axis = "upright"
+length_mm = 260
+start_deg = 0
+end_deg = 90
+[linkage]
+kind = "shaft"
+[load]
+kind = "constant"
+torque_nm = 8
+"""
+
+
+def test_sideways_work_says_what_is_taken_of_the_feet():
+    told = "a wider stance, which tips later, is not modelled"
+    standing = evaluate(read_text(VALVE))
+    assert sum(told in s for s in standing.reasons) == 1
+    assert "165 mm apart" in next(s for s in standing.reasons if told in s)
+    assert not any(told in s for s in judged("gasket_punch").reasons)
+    seated = VALVE.replace("count = 60", 'count = 60\nposture = "seated"')
+    assert not any(told in s for s in evaluate(read_text(seated)).reasons)

@@ -9,7 +9,8 @@ from hypothesis import strategies as st
 from scipy import stats
 
 import ergo
-from ergo.explore.compare import Z, compare, named, paired_interval
+from ergo.explore.compare import compare, named
+from ergo.rating.intervals import Z, paired_interval
 
 
 def study(seed):

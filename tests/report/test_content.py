@@ -6,12 +6,13 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from ergo.report.alternatives import changes_between, comparison, paired_served
+from ergo.report.alternatives import changes_between, comparison, paired_served, sentence
 from ergo.report.blocks import Claim, Points, Rows, Words
 from ergo.report.claims import RATED_HEADS, TABLES, argument, backing
 from ergo.report.content import report
 from ergo.report.drawings import draw_all
 from ergo.report.inputs import bibliography_rows, input_rows, recalled_rows, tables_used
+from tests.rating.paired_score import score_interval
 
 
 @pytest.fixture(scope="module")
@@ -143,10 +144,11 @@ def test_cautions_and_trial_are_in_every_report(made, short):
 def test_paired_difference_on_the_same_people(short):
     crowd = replace(short.crowd, served=np.array([True] + list(short.crowd.served[1:])))
     other = replace(short, crowd=crowd)
-    mean, low, high = paired_served(short, other)
-    # One of eight gained: mean 1/8; variance of the paired differences 1/8 - 1/64 = 7/64.
-    half = 1.959964 * np.sqrt(7.0 / 64.0 / 8.0)
-    assert (mean, low, high) == pytest.approx((0.125, 0.125 - half, 0.125 + half))
+    found, span = paired_served(short, other), score_interval(1, 0, 8)
+    # One of eight gained and nobody lost.
+    assert (found.points, found.low, found.high) == pytest.approx((12.5, 100 * span[0], 100 * span[1]), abs=1e-6)
+    assert "12.5 points more" in sentence(short, other)
+    assert "no difference beyond chance" in sentence(short, other)
 
 
 def test_no_paired_difference_for_other_people(short):

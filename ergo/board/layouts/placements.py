@@ -7,7 +7,7 @@ from dash import dcc, html
 
 from ergo.board.attributes import attributes
 from ergo.board.ids import Id, Part, of
-from ergo.board.kept import axes_of, changes_in_words, paired_difference
+from ergo.board.kept import axes_of, changes_in_words, difference_of
 from ergo.board.store import Kept, Work
 from ergo.evaluation.results import RATING_NAMES
 from ergo.pictures.ratings_view import label
@@ -89,7 +89,7 @@ def _rating(row: dict[str, Any]) -> list[Any]:
 
 def difference_words(first: Kept, kept: Kept) -> str:
     """Return the paired difference in words; no winner inside the noise."""
-    found = paired_difference(first.summary, kept.summary)
+    found = difference_of(first.summary, kept.summary)
     if found is None:
         return "other people: no paired difference"
     span = f"{found.points:+.1f} points, 95\u202f% interval {found.low:+.1f} to {found.high:+.1f}".replace("-", "−")
