@@ -32,9 +32,10 @@ OPERATOR_COLUMNS = 42
 (COS_ELBOW_MIN, TAN_EXTENSION, TAN_BEHIND, TAN_ADDUCTION, COS_MEDIAL, COS_LATERAL, COS_PRONATION, COS_SUPINATION,
  SIN_RADIAL, SIN_ULNAR, SIN_NATURAL) = range(11)  # fmt: skip
 
-# Divisions are guarded where they can vanish, so numba's own checks would only cost branches.
-bare = njit(cache=True, error_model="numpy", fastmath=True)
-bare_parallel = njit(cache=True, error_model="numpy", fastmath=True, parallel=True)
+# Divisions are guarded where they can vanish, so numba's own checks would only cost branches. No fast arithmetic: the
+# compiler would order sums by where a function is inlined, and the run that compiles would differ from those that load.
+bare = njit(cache=True, error_model="numpy")
+bare_parallel = njit(cache=True, error_model="numpy", parallel=True)
 
 GRAVITY = 9.80665
 NO_LIMIT = 1.0e9

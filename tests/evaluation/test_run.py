@@ -304,7 +304,8 @@ def test_a_slippery_floor_costs_standing_people_force():
     heaviest_n = icy.crowd.mass_kg.max() * 9.80665
     level, up = np.hypot(s.work_dir[:, 0], s.work_dir[:, 1]), s.work_dir[:, 2]
     assert (s.capability_n["men_p99"] <= 0.05 * heaviest_n / (level - 0.05 * up) + 1e-6).all()
-    assert s.governing[0]["slipping"] > 0.9
+    # The one stance serves another position best: here a few tip before they slip.
+    assert s.governing[0]["slipping"] > 0.8
 
 
 VALVE = """

@@ -39,7 +39,7 @@ def judged(op, posture, target, view=None):
     return judge_posture(op, SHAPE, view, LIMITS, posture[0], posture[1], target, *posture[2:], np.zeros(COLUMNS))[0]
 
 
-@settings(max_examples=200, deadline=None)
+@settings(max_examples=200)
 @given(POSTURE, st.integers(0, 20), st.sampled_from(STRENGTHS), st.floats(1.0, 3.0))
 def test_a_stronger_person_never_gives_less_in_the_same_posture(posture, seed, column, factor):
     op, target = operators(1, seed)[0], targets(np.random.default_rng(seed), 0.9, 3)[1]
@@ -48,7 +48,7 @@ def test_a_stronger_person_never_gives_less_in_the_same_posture(posture, seed, c
     assert judged(stronger, posture, target) >= judged(op, posture, target) - 1e-9
 
 
-@settings(max_examples=200, deadline=None)
+@settings(max_examples=200)
 @given(POSTURE, st.integers(0, 20), st.floats(0.1, 0.6), st.floats(0.0, 0.4))
 def test_a_rougher_floor_never_takes_force_away(posture, seed, friction, more):
     op, target = operators(1, seed)[0], targets(np.random.default_rng(seed), 0.9, 3)[1]
@@ -56,7 +56,7 @@ def test_a_rougher_floor_never_takes_force_away(posture, seed, friction, more):
     assert judged(op, posture, target, high) >= judged(op, posture, target, low) - 1e-9
 
 
-@settings(max_examples=100, deadline=None)
+@settings(max_examples=100)
 @given(POSTURE, st.integers(0, 20), st.floats(-0.5, 0.5))
 def test_person_and_handle_moved_sideways_together_change_nothing(posture, seed, aside):
     op, target = operators(1, seed)[0], targets(np.random.default_rng(seed), 0.9, 3)[1]
@@ -154,6 +154,7 @@ print(hashlib.sha256(found.force_n.tobytes() + found.easiest.tobytes() + found.s
 
 @pytest.mark.parametrize("threads", ["1", "2"])
 def test_the_number_of_threads_changes_no_bit(threads):
+    """Where the kernels are compiled in this very run, as in CI, it also holds compiling against loading."""
     done = subprocess.run([sys.executable, "-c", PRINTED], env={**os.environ, "NUMBA_NUM_THREADS": threads},
                           capture_output=True, text=True, check=True)  # fmt: skip
     here = found(planned("arbor_press"))

@@ -16,7 +16,7 @@ NAMES = population_keys(LIBRARY)
 
 
 @given(seed=st.integers(0, 2**31 - 1), count=st.integers(1, 300), share=st.floats(0, 1), name=st.sampled_from(NAMES))
-@settings(max_examples=30, deadline=None)
+@settings(max_examples=30)
 def test_same_seed_same_bytes_and_sane_people(seed, count, share, name):
     first, again = (draw(LIBRARY, name, women_share=share, count=count, seed=seed) for _ in range(2))
     assert first.women.sum() == round(share * count)
@@ -36,7 +36,7 @@ def test_same_seed_same_bytes_and_sane_people(seed, count, share, name):
 
 
 @given(seed=st.integers(0, 10_000), share=st.floats(0.1, 0.9))
-@settings(max_examples=15, deadline=None)
+@settings(max_examples=15)
 def test_the_mix_of_sexes_changes_no_woman_and_no_man(seed, share):
     mixed = draw(LIBRARY, "us_adults_2015", women_share=share, count=120, seed=seed)
     women = draw(LIBRARY, "us_adults_2015", women_share=1.0, count=120, seed=seed)

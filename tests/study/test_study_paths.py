@@ -67,7 +67,7 @@ def test_a_measured_path_reads_back(tmp_path):
     assert read_text(study.as_toml(), tmp_path).digest() == study.digest()
 
 
-@settings(max_examples=60, deadline=None)
+@settings(max_examples=60)
 @given(st.fixed_dictionaries({}, optional={k: st.floats(*ends, allow_nan=False) for k, ends in NUMBERS.items()}))
 def test_any_study_reads_back_the_same(values):
     study = read_text(GOOD).with_values(values)
@@ -76,7 +76,7 @@ def test_any_study_reads_back_the_same(values):
     assert again.digest() == study.digest()
 
 
-@settings(max_examples=150, deadline=None, suppress_health_check=[HealthCheck.too_slow])
+@settings(max_examples=150, suppress_health_check=[HealthCheck.too_slow])
 @given(st.data())
 def test_a_damaged_study_gets_problems_or_is_sound_and_never_falls_over(data):
     text = data.draw(st.sampled_from([GOOD, GOOD + ZONE, SHIPPED[0].read_text(encoding="utf-8")]))
